@@ -1,0 +1,343 @@
+/**
+ * The record: the waist of the program. Everything above it computes, everything below it presents.
+ *
+ * One JSON document a brief, holding all that its pages show and all that is needed to compute it again.
+ * Numbers are at full precision unless a key is called `printed`, whose numbers stand as they are printed.
+ * Periods are written as SDMX 2.1 writes them (`2026-Q4`, `2026-10`, `2026-S2`, `2026`) or as ISO 8601 dates
+ * (weeks and four-week periods, by their first day). A missing figure is `null`.
+ */
+import { z } from 'zod';
+
+const number = z.number();
+const missable = z.number().nullable();
+const count = z.int().min(0);
+const period = z.string();
+const range = z.tuple([number, number]);
+const sha256 = z.string().regex(/^[0-9a-f]{64}$/);
+
+const event = z.strictObject({
+  what: z.string(),
+  from: period,
+  to: period.nullable(),
+  effect: z.enum(['passing', 'lasting']),
+  /** The name of the coefficient in `fit.coefficients` that measures it. */
+  coefficient: z.string(),
+});
+
+/** Something odd in the figures, and what was done about it. */
+const finding = z.strictObject({
+  id: z.enum(['missing', 'unfinished-left-out', 'outside-span']),
+  periods: z.array(period),
+  done: z.enum(['nothing', 'left-out', 'left-missing']),
+});
+
+const coefficient = z.strictObject({
+  name: z.string(),
+  symbol: z.string(),
+  value: number,
+  standardError: missable,
+});
+
+/** A term of a difference equation: a weight on a value so many periods back. */
+const lagTerm = z.strictObject({
+  lag: z.int().min(1),
+  weight: number,
+  /** The weight as a sum of products of coefficients, e.g. `φ₁ − φ₁Φ₁`; in TeX. */
+  tex: z.string(),
+});
+
+const workedTerm = z.strictObject({
+  kind: z.enum(['past', 'surprise', 'constant', 'effect-off', 'effect-on', 'rounding', 'floor']),
+  lag: z.int().min(0).nullable(),
+  period: period.nullable(),
+  /** What was observed (or the surprise), to `decimals.value` places. */
+  value: missable,
+  /** To `decimals.weight` places; printed weight times printed value is the printed product. */
+  weight: missable,
+  /** To `decimals.product` places. */
+  product: number,
+  /** True where the value was missing and the model's smoothed value stands in. */
+  smoothed: z.boolean(),
+  /** The name of the effect, for `effect-off` and `effect-on`. */
+  coefficient: z.string().nullable(),
+});
+
+/** A line that leads from the worked sum on the model's scale back to the user's units. */
+const backLine = z.strictObject({
+  kind: z.enum(['base', 'growth', 'transformed', 'middle', 'to-expected', 'expected']),
+  period: period.nullable(),
+  /** +1 where a base figure multiplies (or, transformed, is added), -1 where it divides (is taken off). */
+  power: z.union([z.literal(1), z.literal(-1)]).nullable(),
+  value: number,
+  decimals: count,
+  smoothed: z.boolean(),
+});
+
+const workedSum = z.strictObject({
+  period,
+  /** `value`: the sum runs in the figures themselves. `difference`: in the differenced variable. */
+  variable: z.enum(['value', 'difference']),
+  unit: z.enum(['units', 'log-hundredths', 'transformed']),
+  decimals: z.strictObject({ value: count, weight: count, product: count, total: count }),
+  terms: z.array(workedTerm),
+  /** The column's sum to `decimals.total` places. */
+  total: number,
+  /** Empty on the plain scale. */
+  back: z.array(backLine),
+  /** What the sum leads to: the first period's expected value, to `decimals.total` places of the units. */
+  expected: number,
+});
+
+const equation = z.strictObject({
+  /** Expanded over the figures (on the model's scale): y_t = sum of lags + constant + e_t + sum of surprises. */
+  lags: z.array(lagTerm),
+  surprises: z.array(lagTerm),
+  constant: number,
+  /** The same in the differenced variable z. */
+  differenced: z.strictObject({ lags: z.array(lagTerm), surprises: z.array(lagTerm), constant: number }),
+  /** The textbook forms, typeset in TeX. */
+  tex: z.strictObject({
+    backshift: z.string(),
+    symbols: z.string(),
+    numbers: z.string(),
+    differencedDefinition: z.string().nullable(),
+    differencedSymbols: z.string().nullable(),
+    differencedNumbers: z.string().nullable(),
+  }),
+  workedSum,
+  /** The next forecast as a weighted sum of past figures (model's scale): weight of each lag. */
+  weights: z.array(z.strictObject({ lag: z.int().min(1), weight: number })),
+  /** What one unit of surprise adds so many periods later; step 0 is 1. */
+  echo: z.array(z.strictObject({ step: count, effect: number })),
+  /** One for each coefficient of the fit, in its order: the facts that its sentence is chosen by. */
+  meanings: z.array(
+    z.strictObject({
+      coefficient: z.string(),
+      role: z.enum([
+        'ar',
+        'ma',
+        'seasonal-ar',
+        'seasonal-ma',
+        'constant',
+        'passing-event',
+        'lasting-event',
+        'regressor',
+      ]),
+      lag: z.int().min(0),
+      value: number,
+      /** Estimate plus and minus 1.96 standard errors; null without a standard error. */
+      range: range.nullable(),
+      size: z.enum(['none', 'small', 'medium', 'large']),
+      /** What an effect amounts to in per cent of the level (log scale), else null. */
+      percent: missable,
+      /** How far the first forecast (middle, in units) moves for one standard error. */
+      sensitivity: missable,
+    }),
+  ),
+});
+
+const outlookPeriod = z.strictObject({
+  period,
+  expected: number,
+  middle: number,
+  range80: range,
+  range95: range,
+  standardError: number,
+});
+
+const outlookTotal = z.strictObject({
+  /** `ahead`: all periods ahead. `reporting-year`: a reporting year, with what has already happened in it. */
+  kind: z.enum(['ahead', 'reporting-year']),
+  /** For `reporting-year`, the year it starts in. */
+  year: z.int().nullable(),
+  periods: z.array(period),
+  /** The part of the total that has already happened. */
+  known: number,
+  expected: number,
+  middle: number,
+  range80: range,
+  range95: range,
+});
+
+const printedRow = z.strictObject({
+  expected: number,
+  range80: range,
+  range95: range,
+  /** The same period (or periods) a year before; null where it is missing or itself ahead. */
+  lastYear: missable,
+  /** Whole per cent against `lastYear`; null where there is nothing to compare with. */
+  change: z.int().nullable(),
+});
+
+/**
+ * The numbers as page 1 prints them. The rule: a number is rounded to the largest power of ten that is not above
+ * a tenth of the narrowest 8-in-10 range beside it, and never finer than the plan's decimal places.
+ * The total's expected value is the sum of the printed rows, so the column adds up.
+ */
+const printed = z.strictObject({
+  /** Decimal places of rows and of the total row. */
+  places: count,
+  step: number,
+  periods: z.array(printedRow),
+  total: printedRow,
+  /** The answer's numbers: the total, rounded by its own range. */
+  answer: z.strictObject({
+    places: count,
+    step: number,
+    expected: number,
+    range80: range,
+    lastYear: missable,
+    change: z.int().nullable(),
+  }),
+});
+
+/** Facts that sentences are chosen by; computed here so that templates choose words and nothing else. */
+const facts = z.strictObject({
+  direction: z.strictObject({
+    kind: z.enum(['rising', 'falling', 'level', 'unknown']),
+    /** Average change per year over the last years, as a share of the level (0.05 is 5%); null if unknown. */
+    perYear: missable,
+    years: count,
+  }),
+  /** Null without a season. */
+  season: z
+    .strictObject({
+      strength: z.enum(['strong', 'weak', 'none']),
+      /** Positions in the year (1 to m) that stand together at the season's peak. */
+      peak: z.array(z.int().min(1)),
+      /** Their average share of a full year's total over the last years; null where totals make no sense. */
+      share: missable,
+      /** The quietest position and its share. */
+      trough: z.int().min(1),
+      troughShare: missable,
+      /** Whether the first position of `peak`, or one of them, was the year's highest in every full year. */
+      everyYear: z.boolean(),
+      fullYears: count,
+    })
+    .nullable(),
+  /** The last observed period against what the model expected one period before. */
+  surprise: z
+    .strictObject({
+      period,
+      actual: number,
+      expected: number,
+      /** Share of the expected value; null where that is zero or below. */
+      relative: missable,
+      size: z.enum(['none', 'small', 'large']),
+      /** Share of the surprise that is expected still to be there in the next period and in the same period of next year. */
+      carryNext: number,
+      carryYear: missable,
+    })
+    .nullable(),
+  /** Width of the answer's 8-in-10 range as a share of its expected value; null where that is zero or below. */
+  relativeRange: missable,
+  /** Only what this series has earned, worst first. */
+  caveats: z.array(
+    z.strictObject({
+      id: z.enum([
+        'unsettled-fit',
+        'short-history',
+        'missing-figures',
+        'wide-range',
+        'leftover-pattern',
+        'near-limit',
+        'event-set-aside',
+        'lasting-event',
+        'sold-out',
+        'ranges-untested',
+        'axis-below-zero',
+      ]),
+      count: missable,
+      share: missable,
+      what: z.string().nullable(),
+      from: period.nullable(),
+      to: period.nullable(),
+    }),
+  ),
+});
+
+export const recordSchema = z.strictObject({
+  format: z.literal('seasonbrief-record/1'),
+  brief: z.string(),
+  issued: z.string(),
+  software: z.strictObject({ name: z.literal('seasonbrief'), version: z.string() }),
+  plan: z.strictObject({
+    heading: z.string(),
+    preparedFor: z.string(),
+    preparedBy: z.string().nullable(),
+    locale: z.string(),
+    currency: z.string(),
+    paper: z.enum(['A4', 'Letter']),
+    yearStarts: z.int().min(1).max(12),
+    templates: sha256,
+  }),
+  series: z.strictObject({
+    name: z.string(),
+    slug: z.string(),
+    unit: z.string(),
+    places: count,
+    every: z.enum(['week', 'four-weeks', 'month', 'quarter', 'half-year', 'year']),
+    season: z.int().min(1),
+  }),
+  figures: z.strictObject({
+    start: period,
+    values: z.array(missable),
+    sha256,
+    findings: z.array(finding),
+    events: z.array(event),
+    soldOut: z.array(period),
+    regressors: z.array(z.strictObject({ name: z.string(), values: z.array(number) })),
+  }),
+  model: z.strictObject({
+    form: z.string(),
+    scale: z.string(),
+    constant: z.boolean(),
+    fittedBy: z.enum(['maximum-likelihood', 'shrunk']),
+    priors: z.unknown().nullable(),
+    chosenBy: z.enum(['planner', 'advice']),
+    reason: z.string().nullable(),
+  }),
+  fit: z.strictObject({
+    coefficients: z.array(coefficient),
+    innovationVariance: number,
+    logLikelihood: number,
+    aicc: missable,
+    observations: count,
+    /** One-step surprises on the model's scale; null at gaps and in the diffuse start. */
+    residuals: z.array(missable),
+    standardizedResiduals: z.array(missable),
+    settled: z.boolean(),
+    /** Polynomials with a root within 0.01 of the unit circle, and whether two sides nearly cancel. */
+    nearUnitRoots: z.array(z.string()),
+    nearlyCancels: z.boolean(),
+    /** Autocorrelations of the standardized residuals at lags 1, 2, …, and the bound 1.96/√n. */
+    autocorrelations: z.array(number),
+    autocorrelationBound: number,
+  }),
+  equation,
+  outlook: z.strictObject({
+    seed: count,
+    paths: count,
+    periods: z.array(outlookPeriod),
+    totals: z.array(outlookTotal),
+    /** True where the paths were held at zero or above. */
+    heldAtZero: z.boolean(),
+  }),
+  printed,
+  facts,
+  assumptions: z.array(
+    z.strictObject({
+      id: z.string(),
+      status: z.enum(['holds', 'doubtful', 'fails', 'untested']),
+      statistic: missable,
+      pValue: missable,
+    }),
+  ),
+  trackRecord: z.null(),
+  judgement: z.null(),
+  purchase: z.null(),
+  budget: z.null(),
+  lookBack: z.null(),
+});
+
+export type BriefRecord = z.infer<typeof recordSchema>;

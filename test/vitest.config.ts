@@ -1,0 +1,12 @@
+import { fileURLToPath } from 'node:url';
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+  root: fileURLToPath(new URL('..', import.meta.url)),
+  test: {
+    include: ['test/**/*.test.ts'],
+    exclude: ['test/proof/**'],
+    testTimeout: 30_000,
+    hookTimeout: 90_000,
+  },
+});
