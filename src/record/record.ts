@@ -47,27 +47,35 @@ const lagTerm = z.strictObject({
 });
 
 const workedTerm = z.strictObject({
-  kind: z.enum(['past', 'surprise', 'constant', 'effect-off', 'effect-on', 'rounding', 'floor']),
+  /** `earlier`: what comes from before the first figure, in one line. `floor`: what holding at zero adds. */
+  kind: z.enum(['past', 'surprise', 'constant', 'earlier', 'effect-off', 'effect-on', 'floor', 'rounding']),
+  /** Null where the line is not about one period. */
   lag: z.int().min(0).nullable(),
   period: period.nullable(),
-  /** What was observed (or the surprise), to `decimals.value` places. */
+  /** What was observed, the surprise, the constant c or the effect, to `decimals.value` places. */
   value: missable,
   /** To `decimals.weight` places; printed weight times printed value is the printed product. */
   weight: missable,
-  /** To `decimals.product` places. */
+  /** The places that this line's value and weight are printed with. */
+  decimals: z.strictObject({ value: count, weight: count }),
+  /** To the sum's `decimals.product` places. */
   product: number,
-  /** True where the value was missing and the model's smoothed value stands in. */
+  /** True where the value was missing or a lower bound and the model's smoothed value stands in. */
   smoothed: z.boolean(),
-  /** The name of the effect, for `effect-off` and `effect-on`. */
+  /** The name of the effect, for `effect-off` (from all past periods in the sum together) and `effect-on`. */
   coefficient: z.string().nullable(),
 });
 
-/** A line that leads from the worked sum on the model's scale back to the user's units. */
+/**
+ * A line that leads from the worked sum on the model's scale back to the user's units. Log scale: the base figures
+ * times the growth factor, e^(sum/100), is the middle. Box-Cox scale: the transformed base figures plus the sum is
+ * `transformed`, which the scale turns back into the middle. The middle plus `to-expected` is `expected`.
+ */
 const backLine = z.strictObject({
   kind: z.enum(['base', 'growth', 'transformed', 'middle', 'to-expected', 'expected']),
   period: period.nullable(),
-  /** +1 where a base figure multiplies (or, transformed, is added), -1 where it divides (is taken off). */
-  power: z.union([z.literal(1), z.literal(-1)]).nullable(),
+  /** How often a base figure multiplies (transformed: is added); negative where it divides (is taken off). */
+  power: z.int().nullable(),
   value: number,
   decimals: count,
   smoothed: z.boolean(),
@@ -78,13 +86,13 @@ const workedSum = z.strictObject({
   /** `value`: the sum runs in the figures themselves. `difference`: in the differenced variable. */
   variable: z.enum(['value', 'difference']),
   unit: z.enum(['units', 'log-hundredths', 'transformed']),
-  decimals: z.strictObject({ value: count, weight: count, product: count, total: count }),
+  decimals: z.strictObject({ product: count, total: count }),
   terms: z.array(workedTerm),
   /** The column's sum to `decimals.total` places. */
   total: number,
   /** Empty on the plain scale. */
   back: z.array(backLine),
-  /** What the sum leads to: the first period's expected value, to `decimals.total` places of the units. */
+  /** What it all leads to: the first period's expected value in units, to the plan's decimal places. */
   expected: number,
 });
 
@@ -94,9 +102,19 @@ const equation = z.strictObject({
   surprises: z.array(lagTerm),
   constant: number,
   /** The same in the differenced variable z. */
-  differenced: z.strictObject({ lags: z.array(lagTerm), surprises: z.array(lagTerm), constant: number }),
-  /** The textbook forms, typeset in TeX. */
+  differenced: z.strictObject({
+    /** z is the variable differenced `regular` times, and `seasonal` times over a season of `season` periods. */
+    definition: z.strictObject({ regular: count, seasonal: count, season: z.int().min(1) }),
+    lags: z.array(lagTerm),
+    surprises: z.array(lagTerm),
+    constant: number,
+  }),
+  /**
+   * The textbook forms, typeset in TeX and broken into lines for a column of 120 mm. Numbers have a decimal point.
+   * Off the plain scale, or with events, the variable is not y itself: `variableDefinition` then says what it is.
+   */
   tex: z.strictObject({
+    variableDefinition: z.string().nullable(),
     backshift: z.string(),
     symbols: z.string(),
     numbers: z.string(),
@@ -128,9 +146,9 @@ const equation = z.strictObject({
       /** Estimate plus and minus 1.96 standard errors; null without a standard error. */
       range: range.nullable(),
       size: z.enum(['none', 'small', 'medium', 'large']),
-      /** What an effect amounts to in per cent of the level (log scale), else null. */
+      /** What an effect or the constant amounts to in per cent (log scale), else null. */
       percent: missable,
-      /** How far the first forecast (middle, in units) moves for one standard error. */
+      /** How far, and which way, the first forecast (middle, in units) moves for one standard error more. */
       sensitivity: missable,
     }),
   ),
@@ -163,16 +181,20 @@ const printedRow = z.strictObject({
   expected: number,
   range80: range,
   range95: range,
-  /** The same period (or periods) a year before; null where it is missing or itself ahead. */
+  /**
+   * The same period (or periods) a year before, to `places` and not to the step, being known; null where it is
+   * missing or itself ahead.
+   */
   lastYear: missable,
-  /** Whole per cent against `lastYear`; null where there is nothing to compare with. */
+  /** Whole per cent of the printed `expected` against the printed `lastYear`; null unless that is above zero. */
   change: z.int().nullable(),
 });
 
 /**
  * The numbers as page 1 prints them. The rule: a number is rounded to the largest power of ten that is not above
  * a tenth of the narrowest 8-in-10 range beside it, and never finer than the plan's decimal places.
- * The total's expected value is the sum of the printed rows, so the column adds up.
+ * The total's expected value is the sum of the printed rows, so the column adds up; the answer rounds the total's
+ * printed numbers on, so that a reader can check every number against the one it comes from.
  */
 const printed = z.strictObject({
   /** Decimal places of rows and of the total row. */
