@@ -2,14 +2,13 @@
  * How wide a text is drawn, measured on the typefaces that the brief embeds, so that charts are laid out
  * without a browser and with the same result on every machine.
  */
-import type { Font } from 'fontkit';
-import { type Face, type Family, faceOf, openFaces, weights } from './typefaces.js';
+import { type Face, type Family, faceOf, openFaces, styleFor, styles } from './typefaces.js';
 
 export interface TextStyle {
   readonly family: Family;
   /** In the unit that the width comes back in. */
   readonly size: number;
-  /** 400 unless given; held to the weights that the brief embeds. */
+  /** 400 unless given. */
   readonly weight?: number;
   readonly italic?: boolean;
 }
@@ -19,16 +18,12 @@ export type TextWidth = (text: string, style: TextStyle) => number;
 
 /** Opens the typefaces (once a process) and gives the measure, which itself waits for nothing. */
 export const openTextWidth = async (): Promise<TextWidth> => {
-  const faces = {
-    serif: { upright: await openFaces('serif', false), italic: await openFaces('serif', true) },
-    sans: { upright: await openFaces('sans', false), italic: await openFaces('sans', true) },
-  };
+  const faces = new Map(await Promise.all(styles.map(async (style) => [style, await openFaces(style)] as const)));
   return (text, { family, size, weight = 400, italic = false }) => {
-    const within = Math.min(Math.max(weight, weights.min), weights.max);
     let ems = 0;
-    for (const run of runsOf(text, faces[family][italic ? 'italic' : 'upright'])) {
+    for (const run of runsOf(text, faces.get(styleFor(family, weight, italic)) ?? [])) {
       // What no face holds is drawn in whatever the reader's machine has: an em is the widest of letters.
-      ems += run.face ? runWidth(run.text, run.face, within) : [...run.text].length;
+      ems += run.face ? runWidth(run.text, run.face) : [...run.text].length;
     }
     return ems * size;
   };
@@ -57,21 +52,9 @@ const runsOf = (text: string, faces: readonly Face[]): Run[] => {
 const widths = new Map<string, number>();
 
 /** In ems. */
-const runWidth = (text: string, face: Face, weight: number): number => {
-  const key = `${face.name} ${weight} ${text}`;
-  const known = widths.get(key);
-  if (known !== undefined) return known;
-  const font = weighted(face, weight);
-  const width = font.layout(text).advanceWidth / font.unitsPerEm;
+const runWidth = (text: string, face: Face): number => {
+  const key = `${face.name} ${text}`;
+  const width = widths.get(key) ?? face.font.layout(text).advanceWidth / face.font.unitsPerEm;
   widths.set(key, width);
   return width;
-};
-
-const fonts = new Map<string, Font>();
-
-const weighted = (face: Face, weight: number): Font => {
-  const key = `${face.name} ${weight}`;
-  const font = fonts.get(key) ?? (face.variable ? face.font.getVariation({ wght: weight }) : face.font);
-  fonts.set(key, font);
-  return font;
 };

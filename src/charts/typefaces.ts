@@ -1,9 +1,10 @@
 /**
- * The two typefaces of a brief and the files that hold them.
+ * The two typefaces of a brief: the styles it is set in, and the fonts that hold them.
  *
- * Each face comes cut into files by script. A character is set from the first file of its family and style that
- * holds it; what neither typeface holds (arrows, signs of comparison) comes from the equations' own face.
- * The families go by names without a bare digit, which unquoted would be no valid CSS family name.
+ * The font files come cut by script, with a weight axis. Each style is taken out of the axis as a plain font: a PDF
+ * can hold a plain font as it is, but draws a variable one glyph by glyph (Type 3). A character is set from the
+ * first font of its style that holds it; what neither typeface holds (arrows, signs of comparison) comes from the
+ * equations' own face.
  */
 import { readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
@@ -12,31 +13,44 @@ import subsetFont from 'subset-font';
 
 export type Family = 'serif' | 'sans';
 
-/** The names by which style sheets and charts ask for the two typefaces. */
+/**
+ * The names by which style sheets and charts ask for the typefaces. Without a bare digit: unquoted, that would be no
+ * valid CSS family name.
+ */
 export const familyNames: Readonly<Record<Family, string>> = { serif: 'Brief Serif', sans: 'Brief Sans' };
 
-/** The weights that a brief may use; the files hold more, which would only cost room. */
-export const weights = { min: 400, max: 700 } as const;
+export interface Style {
+  readonly family: Family;
+  readonly weight: 400 | 600;
+  readonly italic: boolean;
+}
 
-/** One opened font file of a family and style. */
+/** What a brief is set in. Other weights and slants are drawn in the nearest of these. */
+export const styles: readonly Style[] = [
+  { family: 'serif', weight: 400, italic: false },
+  { family: 'serif', weight: 600, italic: false },
+  { family: 'serif', weight: 400, italic: true },
+  { family: 'sans', weight: 400, italic: false },
+  { family: 'sans', weight: 600, italic: false },
+];
+
+/** The style that a browser takes: weights up to 500 are the regular one; sans italics are its upright, slanted. */
+export const styleFor = (family: Family, weight: number, italic: boolean): Style => {
+  const ofFamily = styles.filter((style) => style.family === family);
+  const ofSlant = ofFamily.filter((style) => style.italic === italic);
+  const candidates = ofSlant.length > 0 ? ofSlant : ofFamily;
+  return candidates.find((style) => style.weight > 500 === weight > 500) ?? candidates[0];
+};
+
+/** One of the fonts that make up a style. */
 export interface Face {
-  /** The file's name, which tells it from every other. */
+  /** Tells it from every other, and says what it holds, e.g. `latin`. */
   readonly name: string;
-  readonly variable: boolean;
-  /** The font unpacked (TrueType), its weight cut down to `weights`. */
+  readonly script: string;
+  /** The font as TrueType. */
   readonly data: Buffer;
   readonly font: Font;
 }
-
-const opened = new Map<string, Promise<readonly Face[]>>();
-
-/** The files of a family and style, in the order in which they are asked for a character; opened once a process. */
-export const openFaces = (family: Family, italic: boolean): Promise<readonly Face[]> => {
-  const key = `${family} ${italic}`;
-  const faces = opened.get(key) ?? Promise.all(filesOf(family, italic).map(openFace));
-  opened.set(key, faces);
-  return faces;
-};
 
 /** The face that a character is set from, or undefined where none holds it. */
 export const faceOf = (character: string, faces: readonly Face[]): Face | undefined => {
@@ -44,26 +58,37 @@ export const faceOf = (character: string, faces: readonly Face[]): Face | undefi
   return faces.find((face) => face.font.hasGlyphForCodePoint(codePoint));
 };
 
-const filesOf = (family: Family, italic: boolean): string[] => {
-  const name = { serif: 'source-serif-4', sans: 'source-sans-3' }[family];
-  const scripts = ['latin', 'latin-ext', 'greek', 'cyrillic', 'cyrillic-ext', 'vietnamese'];
-  const style = italic ? 'italic' : 'normal';
-  return [
-    ...scripts.map((script) => `@fontsource-variable/${name}/files/${name}-${script}-wght-${style}.woff2`),
-    'katex/dist/fonts/KaTeX_Main-Regular.woff2',
-  ];
+/** The fonts of a style, in the order in which they are asked for a character; opened once a process. */
+export const openFaces = (style: Style): Promise<readonly Face[]> => {
+  const faces = opened.get(style) ?? Promise.all(scripts.map((script) => openFace(style, script)));
+  opened.set(style, faces);
+  return faces;
+};
+
+const opened = new Map<Style, Promise<readonly Face[]>>();
+
+const signs = 'signs';
+const scripts = ['latin', 'latin-ext', 'greek', 'cyrillic', 'cyrillic-ext', 'vietnamese', signs];
+
+const openFace = async (style: Style, script: string): Promise<Face> => {
+  const { family, weight, italic } = style;
+  const packed = await readFile(
+    resolve(script === signs ? 'katex/dist/fonts/KaTeX_Main-Regular.woff2' : fileOf(style, script)),
+  );
+  const characters = String.fromCodePoint(...openFont(packed).characterSet);
+  const data = await subsetFont(packed, characters, {
+    targetFormat: 'sfnt',
+    ...(script !== signs && { variationAxes: { wght: weight } }),
+  });
+  return { name: `${family} ${weight} ${italic} ${script}`, script, data, font: openFont(data) };
 };
 
 const resolve = createRequire(import.meta.url).resolve;
 
-const openFace = async (file: string): Promise<Face> => {
-  const packed = await readFile(resolve(file));
-  // fontkit types the result as a font or a collection; a woff2 file holds one font.
-  const { characterSet, variationAxes } = create(packed) as Font;
-  const variable = 'wght' in variationAxes;
-  const data = await subsetFont(packed, String.fromCodePoint(...characterSet), {
-    targetFormat: 'sfnt',
-    ...(variable && { variationAxes: { wght: { ...weights } } }),
-  });
-  return { name: file.slice(file.lastIndexOf('/') + 1), variable, data, font: create(data) as Font };
+const fileOf = ({ family, italic }: Style, script: string): string => {
+  const name = { serif: 'source-serif-4', sans: 'source-sans-3' }[family];
+  return `@fontsource-variable/${name}/files/${name}-${script}-wght-${italic ? 'italic' : 'normal'}.woff2`;
 };
+
+/** fontkit types what it opens as a font or a collection of fonts; these files hold one font each. */
+const openFont = (data: Buffer): Font => create(data) as Font;

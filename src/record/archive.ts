@@ -1,0 +1,202 @@
+/**
+ * The archive: one folder a firm, in it one folder for each date of issue, in that the briefs, which never change.
+ *
+ *   openArchive (lock, recover) -> filedBrief? -> stageBrief, setAside … -> fileBriefs (journal, ledger) -> closeArchive
+ */
+import { mkdir, readdir, readFile, rmdir, stat } from 'node:fs/promises';
+import { dirname, join, resolve } from 'node:path';
+import { ArchiveError, archiveError, errorCode } from './archive-error.js';
+import { sha256 } from './canonical.js';
+import { type CoverRecord, coverSchema } from './cover.js';
+import { whereThere } from './disk.js';
+import { abandon, commit, type Recovery, recover, stage, stagingOf } from './journal.js';
+import { chainedRows, type LedgerEntry } from './ledger.js';
+import { type Lock, releaseLock, takeLock } from './lock.js';
+import { type BriefRecord, recordSchema } from './record.js';
+
+export interface Archive {
+  readonly folder: string;
+  /** What had to be done about a write that did not end. */
+  readonly recovery: Recovery;
+  readonly lock: Lock;
+  /** The topmost folder that was made for the archive; removed again if nothing is filed in it. */
+  readonly made: string | undefined;
+}
+
+/** The files of one brief, and those of a cover but for the CSV. */
+export const kinds = ['html', 'pdf', 'json', 'csv'] as const;
+export type Kind = (typeof kinds)[number];
+export type Files = Partial<Readonly<Record<Kind, string | Uint8Array>>>;
+
+/** A record as it is filed, with the SHA-256 of its file. */
+export interface FiledRecord {
+  readonly record: BriefRecord;
+  readonly sha256: string;
+}
+
+/** A brief in a dated folder: the kinds of file that are there, and its record where that can be read. */
+export interface FiledBrief {
+  readonly kinds: readonly Kind[];
+  readonly filed: FiledRecord | { readonly damage: string };
+}
+
+/** Makes the folder where needed, keeps other writers out, and ends what a crash left unfinished. */
+export async function openArchive(folder: string): Promise<Archive> {
+  try {
+    const made = await mkdir(folder, { recursive: true });
+    const lock = await takeLock(folder);
+    try {
+      return { folder, recovery: await recover(folder), lock, made };
+    } catch (error) {
+      await releaseLock(lock);
+      throw error;
+    }
+  } catch (error) {
+    throw archiveError(error, folder);
+  }
+}
+
+/** Clears away what was staged and not filed, and lets other writers in. */
+export async function closeArchive(archive: Archive): Promise<void> {
+  await abandon(stagingOf(archive.folder));
+  await releaseLock(archive.lock);
+  if (archive.made !== undefined) await removeEmpty(archive.folder, archive.made);
+}
+
+/** Removes the folder and those above it up to `top`, as long as they are empty. */
+async function removeEmpty(folder: string, top: string): Promise<void> {
+  try {
+    await rmdir(folder);
+    if (resolve(folder) !== resolve(top)) await removeEmpty(dirname(folder), top);
+  } catch (error) {
+    if (errorCode(error) !== 'ENOTEMPTY') throw error;
+  }
+}
+
+/** The firm whose briefs the archive holds, as its newest cover names it; null in a new archive. */
+export async function filedFor(archive: Archive): Promise<string | null> {
+  const dates = (await readdir(archive.folder)).filter((name) => /^\d{4}-\d{2}-\d{2}$/.test(name)).sort();
+  for (const date of dates.reverse()) {
+    const cover = await filedCover(archive, date);
+    if (cover !== null) return cover.plan.preparedFor;
+  }
+  return null;
+}
+
+async function filedCover(archive: Archive, date: string): Promise<CoverRecord | null> {
+  const text = await whereThere(() => readFile(join(archive.folder, date, 'cover.json'), 'utf8'), null);
+  if (text === null) return null;
+  try {
+    return coverSchema.parse(JSON.parse(text));
+  } catch {
+    // A cover is made anew by every write, so a damaged one bars nothing.
+    return null;
+  }
+}
+
+/** What stands in the dated folder under this name, or null where there is nothing. */
+export async function filedBrief(archive: Archive, date: string, slug: string): Promise<FiledBrief | null> {
+  const there = await filedKinds(archive, date, slug);
+  if (there.length === 0) return null;
+  const file = join(archive.folder, date, `${slug}.json`);
+  if (!there.includes('json')) return { kinds: there, filed: { damage: `${file} is missing` } };
+  try {
+    return { kinds: there, filed: parsedRecord(await readFile(file, 'utf8')) };
+  } catch (error) {
+    return { kinds: there, filed: { damage: `${file} can't be read as a record (${firstLine(error)})` } };
+  }
+}
+
+export async function filedKinds(archive: Archive, date: string, name: string): Promise<Kind[]> {
+  const names = new Set(await whereThere(() => readdir(join(archive.folder, date)), []));
+  return kinds.filter((kind) => names.has(`${name}.${kind}`));
+}
+
+/** Every record of the dated folder by its slug. @throws ArchiveError naming a record that can't be read. */
+export async function filedRecords(archive: Archive, date: string): Promise<Map<string, FiledRecord>> {
+  const names = await whereThere(() => readdir(join(archive.folder, date)), []);
+  const slugs = names
+    .filter((name) => name.endsWith('.json') && name !== 'cover.json')
+    .map((name) => name.slice(0, -5));
+  const records = new Map<string, FiledRecord>();
+  for (const slug of slugs.sort()) {
+    const file = join(archive.folder, date, `${slug}.json`);
+    try {
+      records.set(slug, parsedRecord(await readFile(file, 'utf8')));
+    } catch (error) {
+      const remedy = 'put it back from a copy, or write its series again with --replace';
+      throw new ArchiveError(`${file} can't be read as a record (${firstLine(error)}): ${remedy}`, { cause: error });
+    }
+  }
+  return records;
+}
+
+const parsedRecord = (text: string): FiledRecord => ({
+  record: recordSchema.parse(JSON.parse(text)),
+  sha256: sha256(text),
+});
+
+const firstLine = (error: unknown): string => {
+  const issue = recordIssue(error);
+  return issue ?? (error instanceof Error ? (error.message.split('\n')[0] ?? '') : String(error));
+};
+
+/** zod's own message is a whole JSON document: the first fault and its place say enough. */
+function recordIssue(error: unknown): string | null {
+  if (!(error instanceof Error) || !('issues' in error) || !Array.isArray(error.issues)) return null;
+  const issue: unknown = error.issues[0];
+  if (typeof issue !== 'object' || issue === null || !('path' in issue) || !('message' in issue)) return null;
+  return `${Array.isArray(issue.path) ? issue.path.join('.') : ''}: ${String(issue.message)}`;
+}
+
+/** Writes a brief's or a cover's files beside their place in `folder` (the date, or `trial`). */
+export async function stageFiles(archive: Archive, folder: string, name: string, files: Files): Promise<void> {
+  for (const kind of kinds) {
+    const content = files[kind];
+    if (content !== undefined) await stage(stagingOf(archive.folder), `${folder}/${name}.${kind}`, content);
+  }
+}
+
+/** The folder below a dated one, `replaced/1`, `replaced/2` …, that what this run replaces is kept in. */
+export async function nextReplaced(archive: Archive, date: string): Promise<string> {
+  const taken = await whereThere(() => readdir(join(archive.folder, date, 'replaced')), []);
+  return `${date}/replaced/${Math.max(0, ...taken.map(Number).filter(Number.isInteger)) + 1}`;
+}
+
+/** Stages a copy of a brief's or cover's files as they are now, to be kept in the folder `replaced`. */
+export async function setAside(archive: Archive, date: string, name: string, replaced: string): Promise<void> {
+  for (const kind of await filedKinds(archive, date, name)) {
+    const content = await readFile(join(archive.folder, date, `${name}.${kind}`));
+    await stage(stagingOf(archive.folder), `${replaced}/${name}.${kind}`, content);
+  }
+}
+
+/** Puts everything staged for the date in its place, takes `removals` (paths below the archive) away, writes the ledger. */
+export async function fileBriefs(
+  archive: Archive,
+  date: string,
+  entries: readonly LedgerEntry[],
+  removals: readonly string[],
+): Promise<void> {
+  const staging = stagingOf(archive.folder);
+  const isNew = !(await whereThere(async () => (await stat(join(archive.folder, date))).isDirectory(), false));
+  const moves = isNew ? [date] : await filesBelow(staging.folder, date);
+  const ledger = await whereThere(() => readFile(join(archive.folder, 'ledger.csv'), 'utf8'), null);
+  await commit(staging, { moves, removals: [...removals], ledgerRows: chainedRows(ledger, entries) });
+}
+
+/** Puts the staged trial in place of the last one. */
+export async function fileTrial(archive: Archive): Promise<void> {
+  await commit(stagingOf(archive.folder), { moves: ['trial'], removals: [], ledgerRows: [] });
+}
+
+async function filesBelow(root: string, folder: string): Promise<string[]> {
+  const entries = await readdir(join(root, folder), { withFileTypes: true });
+  const below = await Promise.all(
+    entries.map((entry) => {
+      const path = `${folder}/${entry.name}`;
+      return entry.isDirectory() ? filesBelow(root, path) : [path];
+    }),
+  );
+  return below.flat().sort();
+}

@@ -1,0 +1,149 @@
+/**
+ * Least squares in disguise: minimizes n/2·log Σrᵢ(z)² + ½ Σpⱼ(z)² over z within ±OUTERMOST.
+ *
+ * Both likelihoods of a model have this shape (Mélard 1984 uses it too), so the search is Levenberg's and Marquardt's
+ * (Marquardt, "An algorithm for least-squares estimation of nonlinear parameters", Journal of the Society for
+ * Industrial and Applied Mathematics 11, 1963): one forward difference a parameter gives the gradient and a Hessian that
+ * is never indefinite. What that Hessian leaves out, the curvature of the residuals, is made up from the gradients seen
+ * so far (Dennis, Gay & Welsch, "An adaptive nonlinear least-squares algorithm", ACM Transactions on Mathematical
+ * Software 7, 1981).
+ */
+import { factorize, solveFactored } from './objective.js';
+import { OUTERMOST } from './partial.js';
+
+export interface Problem {
+  readonly parameters: number;
+  /** n, the weight of log Σr². */
+  readonly weight: number;
+  /** r(z), as the last call of `evaluate` left it. */
+  readonly rows: Float64Array;
+  /** p(z), likewise. */
+  readonly penalties: Float64Array;
+  /** The value to be minimized; Infinity where z has none. Fills `rows` and `penalties`. */
+  readonly evaluate: (z: Float64Array) => number;
+}
+
+export interface Minimum {
+  readonly z: Float64Array;
+  readonly value: number;
+  readonly evaluations: number;
+  /** False where the search had to be broken off. */
+  readonly settled: boolean;
+}
+
+const FORWARD = 1e-6;
+const LONGEST_STEP = 2;
+const MOST_ITERATIONS = 100;
+
+/** Searches from `start` until less than `tolerance` is to be gained. */
+export function minimize(problem: Problem, start: Float64Array, tolerance: number): Minimum {
+  const { parameters: k, weight, rows, penalties, evaluate } = problem;
+  const z = start.map(withinBounds);
+  let value = evaluate(z);
+  let evaluations = 1;
+  if (k === 0 || !Number.isFinite(value)) return { z, value, evaluations, settled: k === 0 };
+
+  const base = Float64Array.from(rows);
+  const basePenalties = Float64Array.from(penalties);
+  const slopes = Array.from({ length: k }, () => new Float64Array(rows.length));
+  const penaltySlopes = Array.from({ length: k }, () => new Float64Array(penalties.length));
+  const gradient = new Float64Array(k);
+  const hessian = new Float64Array(k * k);
+  const factor = new Float64Array(k * k);
+  const step = new Float64Array(k);
+  const trial = new Float64Array(k);
+  const shifted = new Float64Array(k);
+  let damping = 1e-3;
+
+  for (let iteration = 0; iteration < MOST_ITERATIONS; iteration++) {
+    shifted.set(z);
+    for (let j = 0; j < k; j++) {
+      const h = z[j] > 0 ? -FORWARD : FORWARD;
+      shifted[j] = z[j] + h;
+      if (!Number.isFinite(evaluate(shifted))) return { z, value, evaluations, settled: false };
+      shifted[j] = z[j];
+      const slope = slopes[j];
+      for (let i = 0; i < rows.length; i++) slope[i] = (rows[i] - base[i]) / h;
+      for (let i = 0; i < penalties.length; i++) penaltySlopes[j][i] = (penalties[i] - basePenalties[i]) / h;
+    }
+    evaluations += k;
+    const perSquare = weight / dot(base, base);
+    for (let i = 0; i < k; i++) {
+      gradient[i] = perSquare * dot(slopes[i], base) + dot(penaltySlopes[i], basePenalties);
+      for (let j = 0; j <= i; j++)
+        hessian[i * k + j] = hessian[j * k + i] =
+          perSquare * dot(slopes[i], slopes[j]) + dot(penaltySlopes[i], penaltySlopes[j]);
+    }
+
+    for (;;) {
+      const predicted = dampedStep(z, gradient, hessian, damping, factor, step);
+      if (predicted < tolerance) return { z, value, evaluations, settled: true };
+      for (let j = 0; j < k; j++) trial[j] = withinBounds(z[j] + step[j]);
+      const reached = evaluate(trial);
+      evaluations++;
+      const ratio = (value - reached) / predicted;
+      if (ratio > 0) {
+        damping = ratio > 0.75 ? damping / 8 : ratio < 0.25 ? damping * 3 : damping;
+        z.set(trial);
+        value = reached;
+        base.set(rows);
+        basePenalties.set(penalties);
+        break;
+      }
+      damping = Math.max(damping, 1e-4) * 6;
+      if (damping > 1e9) return { z, value, evaluations, settled: false };
+    }
+  }
+  return { z, value, evaluations, settled: false };
+}
+
+/**
+ * Solves (H + damping·diag H) step = −gradient over the parameters that are free to move, no longer than LONGEST_STEP in
+ * any of them. Returns the decrease that the quadratic promises.
+ */
+function dampedStep(
+  z: Float64Array,
+  gradient: Float64Array,
+  hessian: Float64Array,
+  damping: number,
+  factor: Float64Array,
+  step: Float64Array,
+): number {
+  const k = z.length;
+  let largest = 0;
+  for (let i = 0; i < k; i++) largest = Math.max(largest, hessian[i * k + i]);
+  if (largest === 0) return 0;
+  for (let i = 0; i < k; i++) {
+    const held = isHeld(z[i], gradient[i]);
+    for (let j = 0; j <= i; j++) factor[i * k + j] = held || isHeld(z[j], gradient[j]) ? 0 : hessian[i * k + j];
+    factor[i * k + i] = held ? largest : hessian[i * k + i] * (1 + damping) + 1e-10 * largest;
+    step[i] = held ? 0 : -gradient[i];
+  }
+  if (!factorize(factor, k)) return 0;
+  solveFactored(factor, k, step);
+  let longest = 0;
+  for (let i = 0; i < k; i++) longest = Math.max(longest, Math.abs(step[i]));
+  if (longest > LONGEST_STEP) for (let i = 0; i < k; i++) step[i] *= LONGEST_STEP / longest;
+  let predicted = 0;
+  for (let i = 0; i < k; i++) {
+    let curved = 0;
+    for (let j = 0; j < k; j++) curved += hessian[i * k + j] * step[j];
+    predicted -= step[i] * (gradient[i] + 0.5 * curved);
+  }
+  return predicted;
+}
+
+/** A parameter at its bound that the gradient would push further. */
+function isHeld(z: number, slope: number): boolean {
+  return (z >= OUTERMOST && slope < 0) || (z <= -OUTERMOST && slope > 0);
+}
+
+function withinBounds(z: number): number {
+  return Math.min(Math.max(z, -OUTERMOST), OUTERMOST);
+}
+
+function dot(a: Float64Array, b: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < a.length; i++) sum += a[i] * b[i];
+  return sum;
+}
