@@ -191,7 +191,7 @@ export function filterErrors(space: FilterSpace): boolean {
 }
 
 /** P of the first period: the stationary covariance of u's state; the lags' finite part is zero. */
-function stationaryCovariance(space: FilterSpace): boolean {
+export function stationaryCovariance(space: Pick<FilterSpace, 'arma' | 'P' | 'size' | 'covariances' | 'top'>): boolean {
   const { arma, P, size, covariances, top } = space;
   const { r, ar, ma } = arma;
   if (!firstColumn(arma, covariances, top)) return false;

@@ -27,7 +27,7 @@ const HIGHEST_ORDER = 12;
 const EXAMPLE = 'e.g. (0,1,1)x(0,1,1)4';
 
 const BRACKET = String.raw`\(([^()]*)\)`;
-const NOTATION = new RegExp(String.raw`^${BRACKET}(?:[xX×]?${BRACKET}(.*))?$`);
+const NOTATION = new RegExp(`^${BRACKET}(?:[xX×]?${BRACKET}(.*))?$`);
 
 /** Reads a model's notation. Throws an Error that says what is wrong with the text and shows a correct one. */
 export function parseForm(text: string): Form {

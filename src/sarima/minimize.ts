@@ -4,9 +4,7 @@
  * Both likelihoods of a model have this shape (Mélard 1984 uses it too), so the search is Levenberg's and Marquardt's
  * (Marquardt, "An algorithm for least-squares estimation of nonlinear parameters", Journal of the Society for
  * Industrial and Applied Mathematics 11, 1963): one forward difference a parameter gives the gradient and a Hessian that
- * is never indefinite. What that Hessian leaves out, the curvature of the residuals, is made up from the gradients seen
- * so far (Dennis, Gay & Welsch, "An adaptive nonlinear least-squares algorithm", ACM Transactions on Mathematical
- * Software 7, 1981).
+ * is never indefinite.
  */
 import { factorize, solveFactored } from './objective.js';
 import { OUTERMOST } from './partial.js';

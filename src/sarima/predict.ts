@@ -1,0 +1,98 @@
+/** Forecasts of the bare model: means, and the joint covariance of their errors, exact from the filter. */
+import { type Arma, createArma, expand } from './arma.js';
+import { createFilter, type FilterSpace, filterErrors } from './filter.js';
+import type { Fit } from './fit.js';
+import { checkRegressors, regressionColumns } from './regressors.js';
+import { toScale } from './scale.js';
+import { psiWeights } from './weights.js';
+
+export interface Prediction {
+  /** On the model's scale, regressors' effects included. */
+  readonly mean: Float64Array;
+  readonly standardError: Float64Array;
+  /** Joint covariance of the forecast errors, ahead by ahead, row by row. */
+  readonly covariance: Float64Array;
+}
+
+/** Forecasts `ahead` periods. Throws where a regressor does not reach that far. */
+export function predict(fit: Fit, ahead: number): Prediction {
+  const n = fit.values.length;
+  checkRegressors(fit.regressors, n + ahead, `a forecast of ${ahead} periods`);
+  const known = effectsOf(fit, n + ahead);
+  const filter = filtered(fit, known);
+  const { arma, size, s, delta, deltaLags, P, lagsUncertain, states } = filter;
+  const { r, ar } = arma;
+
+  // gₕ is the row that reads step h's figure off the state after the last one: g₁ = Z, gₕ₊₁ = gₕT.
+  const readings: Float64Array[] = [];
+  let g = new Float64Array(size);
+  g[0] = 1;
+  g.set(delta, r);
+  for (let h = 0; h < ahead; h++) {
+    readings.push(g);
+    const next = new Float64Array(size);
+    for (let i = 0; i < r; i++) next[0] += g[i] * ar[i];
+    for (let i = 0; i < r - 1; i++) next[i + 1] += g[i];
+    if (s > 0) {
+      next[0] += g[r];
+      for (let l = 0; l < deltaLags.length; l++) next[r + deltaLags[l]] += g[r] * delta[deltaLags[l]];
+      for (let k = 0; k < s - 1; k++) next[r + k] += g[r + k + 1];
+    }
+    g = next;
+  }
+
+  const used = lagsUncertain ? size : r;
+  const spread = readings.map((reading) => {
+    const row = new Float64Array(used);
+    for (let i = 0; i < used; i++)
+      for (let j = 0; j < used; j++) row[i] += reading[j] * P[i <= j ? i * size + j : j * size + i];
+    return row;
+  });
+  const psi = psiWeights(fit, ahead);
+  const mean = new Float64Array(ahead);
+  const standardError = new Float64Array(ahead);
+  const covariance = new Float64Array(ahead * ahead);
+  for (let h = 0; h < ahead; h++) {
+    let value = known[n + h];
+    for (let i = 0; i < size; i++) value += readings[h][i] * states[0][i];
+    mean[h] = value;
+    for (let j = 0; j <= h; j++) {
+      let sum = 0;
+      for (let i = 0; i < used; i++) sum += spread[h][i] * readings[j][i];
+      // The surprises after the first step ahead, which P already holds.
+      for (let l = 1; l <= j; l++) sum += psi[h - l] * psi[j - l];
+      covariance[h * ahead + j] = covariance[j * ahead + h] = sum * fit.innovationVariance;
+    }
+    standardError[h] = Math.sqrt(covariance[h * ahead + h]);
+  }
+  return { mean, standardError, covariance };
+}
+
+/** The constant's and the regressors' part of every period, on the model's scale. */
+export function effectsOf(fit: Fit, length: number): Float64Array {
+  const columns = regressionColumns(fit.form, fit.constant, fit.regressors, length);
+  const effects = fit.constant ? [fit.constantValue, ...fit.effects] : fit.effects;
+  const total = new Float64Array(length);
+  columns.forEach((column, i) => {
+    for (let t = 0; t < length; t++) total[t] += effects[i] * column[t];
+  });
+  return total;
+}
+
+/** The expanded polynomials of a fitted model. */
+export function armaOf(fit: Fit): Arma {
+  const arma = createArma(fit.form);
+  arma.coefficients.set([...fit.phi, ...fit.theta, ...fit.Phi, ...fit.Theta]);
+  expand(arma);
+  return arma;
+}
+
+/** The filter, run over the figures less `known`; `traced` for the smoother, `before` periods unknown put in front. */
+export function filtered(fit: Fit, known: Float64Array, traced = false, before = 0): FilterSpace {
+  const scaled = toScale(fit.values, fit.scale);
+  const series = new Float64Array(before + scaled.length).fill(Number.NaN);
+  for (let t = 0; t < scaled.length; t++) series[before + t] = scaled[t] - known[t];
+  const filter = createFilter(armaOf(fit), [series], traced);
+  if (!filterErrors(filter)) throw new Error('the fitted model is not stationary');
+  return filter;
+}
