@@ -1,0 +1,150 @@
+/**
+ * The upper half of the program: from a brief's inputs to its record.
+ *
+ *   inputs (plan, figures) -> fit -> outlook -> explain -> RECORD
+ *
+ * Nothing but the inputs goes in: no file, no clock. The same inputs give the same record, today and in ten years.
+ */
+import { periodIndex, position, yearOf } from '../calendar/calendar.js';
+import { explain } from '../explain/explain.js';
+import { makeOutlook, type Outlook, type Span } from '../outlook/outlook.js';
+import { type Fit, fitModel } from '../sarima/fit.js';
+import { autocorrelations } from '../stats/autocorrelations.js';
+import { seedOf } from '../stats/seed.js';
+import { type BriefInputs, periodAt } from './inputs.js';
+import { type BriefRecord, recordSchema } from './record.js';
+
+/** Where the record comes from: the program's version, and the folder that its brief is filed in (a date, or `trial`). */
+export interface Origin {
+  readonly version: string;
+  readonly folder: string;
+}
+
+/**
+ * Computes a record. Throws an Error that says what is wrong where the model can't be fitted to the figures (too few of
+ * them, a figure that the scale can't hold …).
+ */
+export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
+  const fit = fitOf(inputs);
+  const outlook = outlookOf(fit, inputs);
+  const explained = explain(fit, outlook, contextOf(inputs));
+  return recordSchema.parse({
+    format: 'seasonbrief-record/1',
+    brief: `${origin.folder}/${inputs.series.slug}`,
+    issued: inputs.issued,
+    software: { name: 'seasonbrief', version: origin.version },
+    plan: inputs.plan,
+    series: inputs.series,
+    figures: inputs.figures,
+    model: inputs.model,
+    fit: fitPart(fit, inputs),
+    equation: explained.equation,
+    outlook: outlookPart(outlook, inputs),
+    printed: explained.printed,
+    facts: explained.facts,
+    assumptions: [],
+    trackRecord: null,
+    judgement: null,
+    purchase: null,
+    budget: null,
+    lookBack: null,
+  });
+}
+
+const fitOf = ({ figures, model, series }: BriefInputs): Fit =>
+  fitModel(
+    figures.values.map((value) => value ?? Number.NaN),
+    {
+      form: model.form,
+      scale: model.scale,
+      constant: model.constant,
+      fittedBy: model.fittedBy,
+      regressors: figures.regressors,
+      season: series.season,
+    },
+  );
+
+const outlookOf = (fit: Fit, inputs: BriefInputs): Outlook =>
+  makeOutlook(fit, {
+    ahead: inputs.ahead,
+    seed: seedOf(`${inputs.issued}/${inputs.series.slug}`),
+    holdAtZero: inputs.figures.values.every((value) => value === null || value >= 0),
+    spans: [aheadSpan(inputs), ...reportingYears(inputs)],
+  });
+
+const aheadSpan = ({ ahead }: BriefInputs): Span => ({
+  kind: 'ahead',
+  year: null,
+  known: 0,
+  steps: Array.from({ length: ahead }, (_, step) => step),
+});
+
+/** The reporting years that the periods ahead reach into and that figures and outlook together cover in full. */
+function reportingYears({ series, figures, plan, ahead }: BriefInputs): Span[] {
+  const { every, season } = series;
+  const first = periodIndex(figures.start, every);
+  const n = figures.values.length;
+  const years = Array.from({ length: n + ahead }, (_, t) => yearOf(first + t, every, plan.yearStarts));
+  return [...new Set(years.slice(n))].flatMap((year): Span[] => {
+    const of = years.flatMap((each, t) => (each === year ? [t] : []));
+    const known = of.filter((t) => t < n).map((t) => figures.values[t]);
+    const begins = of[0] !== undefined && position(first + of[0], every, plan.yearStarts) === 1;
+    if (!begins || of.length < season || known.includes(null)) return [];
+    return [
+      {
+        kind: 'reporting-year',
+        year,
+        known: known.reduce<number>((sum, value) => sum + (value ?? 0), 0),
+        steps: of.filter((t) => t >= n).map((t) => t - n),
+      },
+    ];
+  });
+}
+
+const contextOf = (inputs: BriefInputs) => ({
+  places: inputs.series.places,
+  ahead: inputs.ahead,
+  season: inputs.series.season,
+  yearStarts: inputs.plan.yearStarts,
+  periods: Array.from({ length: inputs.figures.values.length + inputs.ahead }, (_, t) => periodAt(inputs, t)),
+});
+
+function fitPart(fit: Fit, { series }: BriefInputs): BriefRecord['fit'] {
+  const standardized = Array.from(fit.standardizedResiduals, missable);
+  const known = standardized.filter((value) => value !== null).length;
+  const lags = Math.max(0, Math.min(Math.max(2 * series.season, 8), Math.floor(known / 2)));
+  return {
+    coefficients: fit.coefficients.map(({ name, symbol, value, standardError }) => ({
+      name,
+      symbol,
+      value,
+      standardError,
+    })),
+    innovationVariance: fit.innovationVariance,
+    logLikelihood: fit.logLikelihood,
+    aicc: fit.aicc,
+    observations: fit.observations,
+    residuals: Array.from(fit.residuals, missable),
+    standardizedResiduals: standardized,
+    settled: fit.settled,
+    nearUnitRoots: [...fit.nearUnitRoots],
+    nearlyCancels: fit.nearlyCancels,
+    autocorrelations: [...autocorrelations(fit.standardizedResiduals, lags)],
+    // Bartlett (1946): about 19 in 20 autocorrelations of pure chance lie within this.
+    autocorrelationBound: 1.96 / Math.sqrt(Math.max(known, 1)),
+  };
+}
+
+const missable = (value: number): number | null => (Number.isNaN(value) ? null : value);
+
+function outlookPart(outlook: Outlook, inputs: BriefInputs): BriefRecord['outlook'] {
+  const n = inputs.figures.values.length;
+  const ahead = Array.from({ length: inputs.ahead }, (_, step) => periodAt(inputs, n + step));
+  return {
+    seed: outlook.seed,
+    paths: outlook.paths,
+    periods: outlook.periods.map((period, step) => ({ period: ahead[step], ...period })),
+    totals: outlook.totals.map(({ steps, ...total }) => ({ ...total, periods: periodsOfTotal(total, steps, inputs) })),
+    heldAtZero: outlook.heldAtZero,
+  };
+}

@@ -1,0 +1,103 @@
+/**
+ * What a brief is made from: everything in its record that comes from the plan and the figures, before anything is
+ * computed. Two briefs with the same inputs say the same, so these decide whether a filed brief still stands; and a
+ * filed record holds them, so it can be computed again from itself alone.
+ */
+import { isDeepStrictEqual } from 'node:util';
+import { type Every, periodIndex, periodText, seasonOf } from '../calendar/calendar.js';
+import type { SeriesFigures } from '../figures/figures.js';
+import type { Plan, PlannedSeries } from '../plan/plan.js';
+import { formText, parseForm } from '../sarima/form.js';
+import { canonicalJson, sha256 } from './canonical.js';
+import { eventRegressor } from './events.js';
+import type { BriefRecord } from './record.js';
+
+export interface BriefInputs extends Readonly<Pick<BriefRecord, 'issued' | 'plan' | 'series' | 'figures' | 'model'>> {
+  /** Periods to look ahead. */
+  readonly ahead: number;
+}
+
+/** The inputs of one series' brief. The plan must have been checked against the figures. */
+export function briefInputs(
+  plan: Plan,
+  series: PlannedSeries,
+  { every, start, values, findings }: SeriesFigures,
+  templates: string,
+): BriefInputs {
+  const length = values.length + plan.ahead;
+  const events = series.events.map((event, i) => ({ ...event, coefficient: `event${i + 1}` }));
+  const form = parseForm(series.model);
+  return {
+    issued: plan.issued,
+    plan: planPart(plan, templates),
+    series: {
+      name: series.name,
+      slug: series.slug,
+      unit: series.unit,
+      places: series.places,
+      every,
+      season: seasonOf(every),
+    },
+    figures: {
+      start,
+      values: [...values],
+      sha256: figuresSha256(every, start, values),
+      findings: findings.map(({ id, periods, done }) => ({ id, periods: [...periods], done })),
+      events: events.map(({ what, from, to, effect, coefficient }) => ({ what, from, to, effect, coefficient })),
+      soldOut: [...series.soldOut],
+      regressors: events.map((event) => ({
+        name: event.coefficient,
+        values: eventRegressor(event, every, start, length),
+      })),
+    },
+    model: {
+      form: formText(form),
+      scale: series.scale ?? 'plain',
+      constant: series.constant ?? form.d + form.D === 0,
+      fittedBy: series.fittedBy ?? 'maximum-likelihood',
+      priors: null,
+      chosenBy: 'planner',
+      reason: series.reason,
+    },
+    ahead: plan.ahead,
+  };
+}
+
+/** The part of the plan that all its briefs and their cover share. */
+export const planPart = (plan: Plan, templates: string): BriefRecord['plan'] => ({
+  heading: plan.heading,
+  preparedFor: plan.preparedFor,
+  preparedBy: plan.preparedBy,
+  locale: plan.locale,
+  currency: plan.currency,
+  paper: plan.paper,
+  yearStarts: plan.yearStarts,
+  templates,
+});
+
+/** SHA-256 of the figures as they were used, whatever else stands in their file. */
+const figuresSha256 = (every: Every, start: string, values: readonly (number | null)[]): string =>
+  sha256(canonicalJson({ every, start, values }));
+
+/** The inputs that a record was made from. */
+export const inputsOfRecord = ({ issued, plan, series, figures, model, outlook }: BriefRecord): BriefInputs => ({
+  issued,
+  plan,
+  series,
+  figures,
+  model,
+  ahead: outlook.periods.length,
+});
+
+/**
+ * Whether two briefs say the same: the same date, figures, model and plan. The templates and the program's version are
+ * left out of it, since a brief that was issued stands as it was issued, whatever program is installed later.
+ */
+export const sameInputs = (a: BriefInputs, b: BriefInputs): boolean =>
+  isDeepStrictEqual(withoutTemplates(a), withoutTemplates(b));
+
+const withoutTemplates = (inputs: BriefInputs) => ({ ...inputs, plan: { ...inputs.plan, templates: '' } });
+
+/** The text of the period so many after the first. */
+export const periodAt = (inputs: BriefInputs, index: number): string =>
+  periodText(periodIndex(inputs.figures.start, inputs.series.every) + index, inputs.series.every);

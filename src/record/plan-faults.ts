@@ -1,0 +1,77 @@
+/** What only plan and figures together can show to be wrong with the plan. */
+import { type Every, isPeriod, periodIndex, periodText, seasonOf } from '../calendar/calendar.js';
+import type { SeriesFigures } from '../figures/figures.js';
+import { type Fault, shown } from '../figures/input-error.js';
+import type { Plan, PlannedEvent, PlannedSeries } from '../plan/plan.js';
+import { type Form, parseForm } from '../sarima/form.js';
+import { eventRegressor } from './events.js';
+
+/** Every such fault of one series. */
+export function planFaults(plan: Plan, series: PlannedSeries, figures: SeriesFigures): Fault[] {
+  const say = (place: Omit<Fault, 'message'>, message: string): Fault => ({
+    file: place.file,
+    line: place.line,
+    column: place.column,
+    message: `series ${shown(series.name)}: ${message}`,
+  });
+  const events = series.events.flatMap((event) => {
+    const message = eventFault(event, figures);
+    return message === null ? [] : [say(event.at, message)];
+  });
+  const rest = [aheadFault(plan, figures), modelFault(series, figures.every), laterFault(series)];
+  return [...events, ...rest.flatMap((message) => (message === null ? [] : [say(series.at, message)]))];
+}
+
+function eventFault(event: PlannedEvent, { every, start, values }: SeriesFigures): string | null {
+  const named = [event.from, event.to].find((period) => period !== null && !isPeriod(period, every));
+  const what = `event ${shown(event.what)}`;
+  if (named !== undefined) return `${what}: ${shown(named ?? '')} is not a period of figures that come every ${every}`;
+  const column = eventRegressor(event, every, start, values.length);
+  const last = periodText(periodIndex(start, every) + values.length - 1, every);
+  if (!column.includes(1)) {
+    const remedy = event.from > last ? 'say what is still to come as a judgement' : 'leave it out';
+    return `${what} lies outside the figures, which run from ${start} to ${last}; ${remedy}`;
+  }
+  if (!column.includes(0)) {
+    return `${what} covers every figure from ${start} to ${last}, so there is nothing to tell its effect from; leave it out`;
+  }
+  if (!column.some((one, t) => one === 1 && values[t] !== null)) {
+    return `${what} has no figure in its periods, so its effect can't be measured; leave it out, the missing figures stay missing`;
+  }
+  return null;
+}
+
+function aheadFault({ ahead }: Plan, { every }: SeriesFigures): string | null {
+  const most = 3 * seasonOf(every);
+  return ahead <= most
+    ? null
+    : `ahead ${ahead} looks further than three years, which are ${most} periods of figures that come every ${every}`;
+}
+
+function modelFault({ model }: PlannedSeries, every: Every): string | null {
+  if (model === 'advise') return null;
+  return seasonFault(parseForm(model), model, every);
+}
+
+/** A model's season must be the figures' own: another one is a slip, such as a monthly model on quarters. */
+export function seasonFault({ m }: Form, model: string, every: Every): string | null {
+  const season = seasonOf(every);
+  const isLongYear = every === 'week' && m === 53;
+  if (m === 1 || m === season || isLongYear) return null;
+  const form = season === 1 ? 'leave the second bracket out' : `write ${season} after the second bracket`;
+  return `model ${shown(model)} has a season of ${m} periods, but figures that come every ${every} have ${season} a year; ${form}`;
+}
+
+/** What the plan may ask for and this version does not do, where leaving it aside would make the brief wrong. */
+function laterFault({ model, fittedBy, soldOut }: PlannedSeries): string | null {
+  if (model === 'advise') {
+    return 'model "advise" comes with a later version; write a model, such as (0,1,1)x(0,1,1)4';
+  }
+  if (fittedBy === 'shrunk') {
+    return 'fitted-by "shrunk" comes with a later version; write maximum-likelihood, or leave it out';
+  }
+  if (soldOut.length > 0) {
+    return `sold-out ${soldOut.join(', ')} comes with a later version, and would be misread as plain figures; leave those cells of the figures empty, and sold-out out`;
+  }
+  return null;
+}
