@@ -33,6 +33,9 @@ export function stackedTex(equations: readonly string[]): string {
   return `\\begin{aligned} ${equations.map((equation) => equation.replace(' = ', ' &= ')).join(' \\\\ ')} \\end{aligned}`;
 }
 
+/** Whether TeX fits on one line. */
+export const fits = (tex: string): boolean => breadth(tex) <= COLUMN;
+
 /** About how wide TeX is set, in em: from the widths of Computer Modern's characters. */
 export function breadth(tex: string): number {
   const tokens = tex.match(/[_^]\{[^}]*\}|[_^](?:\\[A-Za-z]+|.)|\\[A-Za-z]+|\S/g) ?? [];

@@ -1,7 +1,15 @@
 /** The model's equations in TeX: the backshift form, the expanded form in symbols and in numbers, and what z is. */
 import type { Form } from '../sarima/form.js';
-import { type Expandable, type LagTerm, expand, expandDifferenced, undoDifferences, weightTex } from './expand.js';
-import { equationTex, stackedTex } from './lines.js';
+import {
+  type Expandable,
+  type Expansion,
+  expand,
+  expandDifferenced,
+  type LagTerm,
+  undoDifferences,
+  weightTex,
+} from './expand.js';
+import { equationTex, fits, stackedTex } from './lines.js';
 import { coefficientTex, subscript } from './symbols.js';
 
 /** What is typeset: the model, its scale (`plain`, `log`, `box-cox 0.3`) and how many regressors it has. */
@@ -84,12 +92,13 @@ function backshiftTex({ form, constant }: Typesettable, y: Variable): string {
   return splitAtEquals(left, `${movingAverage}\\varepsilon_t`);
 }
 
-/** 1 − φ₁B − φ₂B² in brackets; nothing where the order is 0. */
+/** 1 − φ₁B − φ₂B² in brackets, with spacing 0 its value at B = 1; nothing where the order is 0. */
 function factorTex(family: string, order: number, spacing: number, sign: '+' | '-'): string {
   if (order === 0) return '';
   const terms = Array.from({ length: order }, (_, i) => {
     const power = (i + 1) * spacing;
-    return ` ${sign} ${coefficientTex(`${family}${i + 1}`)}B${power === 1 ? '' : superscript(`${power}`)}`;
+    const shift = power === 0 ? '' : `B${power === 1 ? '' : superscript(`${power}`)}`;
+    return ` ${sign} ${coefficientTex(`${family}${i + 1}`)}${shift}`;
   });
   return `(1${terms.join('')})`;
 }
@@ -102,9 +111,63 @@ function nablaTex(order: number, spacing: number): string {
   return order === 1 ? nabla : `${nabla}${superscript(`${order}`)}`;
 }
 
+/** z in terms of the variable: z_t = y_t − y_{t−4}. */
+function definitionTex(form: Form, y: Variable): string {
+  const terms = undoDifferences(form).map((term) => signed(-term.weight, (size) => (size === 1 ? '' : `${size}`), y(term.lag)));
+  return equationTex('z_t', [y(0), ...terms]);
+}
+
+/** How an equation's weights are written: as symbols or as numbers. Each part begins with its sign. */
+interface Writing {
+  readonly term: (term: LagTerm, variable: string) => string;
+  readonly constant: string;
+}
+
+function symbolic({ form, constant }: Typesettable): Writing {
+  const atOne = [factorTex('phi', form.p, 0, '-'), factorTex('Phi', form.P, 0, '-')].join('');
+  return {
+    term: ({ products }, variable) => {
+      if (products.length > 1) return `+ (${weightTex(products)})${variable}`;
+      const weight = weightTex(products);
+      if (weight === '1' || weight === '-1') return `${weight === '1' ? '+' : '-'} ${variable}`;
+      return weight.startsWith('-') ? `- ${weight.slice(1)}${variable}` : `+ ${weight}${variable}`;
+    },
+    constant: constant ? `+ ${atOne}c` : '',
+  };
+}
+
+function numeric(model: Typesettable): Writing {
+  const { constant } = expand(model);
+  return {
+    term: ({ weight }, variable) => signed(weight, (size) => (size === 1 ? '' : significant(size, 4)), variable),
+    constant: model.constant ? signed(constant, (size) => significant(size, 5), '') : '',
+  };
+}
+
+function signed(weight: number, size: (size: number) => string, variable: string): string {
+  return `${weight < 0 ? '-' : '+'} ${size(Math.abs(weight))}${variable}`;
+}
+
+/** To so many significant digits, never in exponent form and never finer than ten decimal places. */
+function significant(number: number, digits: number): string {
+  if (number === 0) return '0';
+  const places = Math.min(Math.max(digits - 1 - Math.floor(Math.log10(number)), 0), 10);
+  return number.toFixed(places);
+}
+
+function expandedTex(model: Typesettable, { lags, surprises }: Expansion, y: Variable, writing: Writing): string {
+  const parts = [
+    ...lags.map((term) => writing.term(term, y(term.lag))),
+    ...(model.constant ? [writing.constant] : []),
+    '+ \\varepsilon_t',
+    ...surprises.map((term) => writing.term(term, `\\varepsilon${at(term.lag)}`)),
+  ];
+  return equationTex(y(0), [parts[0].replace(/^\+ /, ''), ...parts.slice(1)]);
+}
+
 /** A backshift form too long for a line has its right-hand side on the next. */
 function splitAtEquals(left: string, right: string): string {
-  return equationTex(left, [right]).length === 0 || fits(`${left} = ${right}`)
+  return fits(`${left} = ${right}`)
     ? `${left} = ${right}`
     : `\\begin{aligned} &${left} \\\\ &\\quad = ${right} \\end{aligned}`;
 }

@@ -8,7 +8,7 @@ import { normalQuantile } from '../../src/stats/normal.js';
 /** Ten invented years of quarters: a season, a trend and noise. */
 const { normal } = createGenerator(7);
 const figures = Array.from({ length: 40 }, (_, t) => 300 + 2 * t + [-80, 60, 90, -70][t % 4] + 12 * normal());
-const fit = (scale: string) => fitModel(figures, { form: '(0,1,1)x(0,1,1)4', scale });
+const fitted = (scale: string) => fitModel(figures, { form: '(0,1,1)x(0,1,1)4', scale });
 const steps = [0, 1, 2, 3];
 const options = {
   ahead: 4,
@@ -19,7 +19,7 @@ const options = {
 
 describe('the matrix of paths', () => {
   test('on the plain scale each step has the bare model’s mean, and normal quantiles by its standard error', () => {
-    const plain = fit('plain');
+    const plain = fitted('plain');
     const { mean, standardError } = predict(plain, 4);
     makeOutlook(plain, options).periods.forEach(({ expected, middle, range80, range95 }, h) => {
       expect(expected).toBeCloseTo(mean[h], 8);
@@ -36,7 +36,7 @@ describe('the matrix of paths', () => {
   });
 
   test('on the log scale the middle is exp of the centre and the mean that of a lognormal, to the clipped tails', () => {
-    const log = fit('log');
+    const log = fitted('log');
     const { mean, standardError } = predict(log, 4);
     makeOutlook(log, options).periods.forEach(({ expected, middle }, h) => {
       expect(middle).toBeCloseTo(Math.exp(mean[h]), 10);
@@ -47,7 +47,7 @@ describe('the matrix of paths', () => {
 
   test('expected values add up to the total’s, and a known part is added to everything', () => {
     const spans = [...options.spans, { kind: 'reporting-year' as const, year: 2026, known: 1000, steps: [0, 1] }];
-    const { periods, totals } = makeOutlook(fit('log'), { ...options, spans });
+    const { periods, totals } = makeOutlook(fitted('log'), { ...options, spans });
     const sum = periods.reduce((total, { expected }) => total + expected, 0);
     expect(totals[0].expected).toBeCloseTo(sum, 8);
     expect(totals[1].expected).toBeCloseTo(1000 + periods[0].expected + periods[1].expected, 8);
@@ -55,7 +55,7 @@ describe('the matrix of paths', () => {
   });
 
   test('the total’s range is that of the joint normal distribution', () => {
-    const plain = fit('plain');
+    const plain = fitted('plain');
     const { mean, covariance } = predict(plain, 4);
     const spread = Math.sqrt(covariance.reduce((sum, value) => sum + value, 0));
     const centre = mean.reduce((sum, value) => sum + value, 0);
@@ -67,8 +67,8 @@ describe('the matrix of paths', () => {
   test.each(['plain', 'log'])(
     'from seed to seed the ends of the total’s range move by a fiftieth of its width on the %s scale',
     (scale) => {
-      const fitted = fit(scale);
-      const ends = Array.from({ length: 20 }, (_, seed) => makeOutlook(fitted, { ...options, seed }).totals[0].range80);
+      const once = fitted(scale);
+      const ends = Array.from({ length: 20 }, (_, seed) => makeOutlook(once, { ...options, seed }).totals[0].range80);
       const width = ends[0][1] - ends[0][0];
       for (const side of [0, 1]) {
         const values = ends.map((range) => range[side]);
@@ -88,7 +88,7 @@ describe('the matrix of paths', () => {
   });
 
   test('the same seed gives the same paths', () => {
-    const log = fit('log');
+    const log = fitted('log');
     expect(makeOutlook(log, options).matrix).toEqual(makeOutlook(log, options).matrix);
     expect(forecast(log, { ahead: 4, seed: 1 }).periods[0].period).toBe(1);
   });
