@@ -8,10 +8,12 @@ export interface Decimal {
   readonly places: number;
 }
 
-/** `number` rounded to `places` decimal places. Throws on what is not finite. */
+/** `number` rounded to `places` decimal places; with -2 to whole hundreds. Throws on what is not finite. */
 export function decimal(number: number, places: number): Decimal {
   const exact = exactDecimal(number);
-  return rounded(exact, places);
+  if (places >= 0) return rounded(exact, places);
+  const coarse = 10n ** BigInt(-places);
+  return { units: divide(exact.units, 10n ** BigInt(exact.places) * coarse) * coarse, places: 0 };
 }
 
 /** The number that prints as this decimal; never -0. */
@@ -80,7 +82,8 @@ const magnitude = (a: bigint): bigint => (a < 0n ? -a : a);
 
 /** The shortest decimal that stands for the number. */
 function exactDecimal(number: number): Decimal {
-  const [, sign, whole, fraction = '', exponent = '0'] = /^(-?)(\d+)(?:\.(\d+))?(?:e([+-]\d+))?$/.exec(`${number}`) ?? [];
+  const [, sign, whole, fraction = '', exponent = '0'] =
+    /^(-?)(\d+)(?:\.(\d+))?(?:e([+-]\d+))?$/.exec(`${number}`) ?? [];
   if (whole === undefined) throw new RangeError(`a printed number must be finite, but here stands ${number}`);
   const units = BigInt(`${sign}${whole}${fraction}`);
   const places = fraction.length - Number(exponent);

@@ -88,9 +88,10 @@ const difference = (spacing: number): Polynomial => [one, { lag: spacing, times:
 const repeat = <T>(item: T, count: number): T[] => Array.from({ length: count }, () => item);
 
 function multiplyOut(factors: readonly Polynomial[]): Polynomial {
-  return factors.reduce((product, factor) => collected(product.flatMap((a) => factor.map((b) => multiplied(a, b)))), [
-    one,
-  ]);
+  return factors.reduce(
+    (product, factor) => collected(product.flatMap((a) => factor.map((b) => multiplied(a, b)))),
+    [one],
+  );
 }
 
 function multiplied(a: Monomial, b: Monomial): Monomial {

@@ -113,7 +113,9 @@ function nablaTex(order: number, spacing: number): string {
 
 /** z in terms of the variable: z_t = y_t − y_{t−4}. */
 function definitionTex(form: Form, y: Variable): string {
-  const terms = undoDifferences(form).map((term) => signed(-term.weight, (size) => (size === 1 ? '' : `${size}`), y(term.lag)));
+  const terms = undoDifferences(form).map((term) =>
+    signed(-term.weight, (size) => (size === 1 ? '' : `${size}`), y(term.lag)),
+  );
   return equationTex('z_t', [y(0), ...terms]);
 }
 

@@ -6,11 +6,11 @@
  * Nothing but the inputs goes in: no file, no clock. The same inputs give the same record, today and in ten years.
  */
 import { periodIndex, position, yearOf } from '../calendar/calendar.js';
-import { explain } from '../explain/explain.js';
+import { type Context, explain } from '../explain/explain.js';
 import { makeOutlook, type Outlook, type Span } from '../outlook/outlook.js';
 import { type Fit, fitModel } from '../sarima/fit.js';
-import { autocorrelations } from '../stats/autocorrelations.js';
-import { seedOf } from '../stats/seed.js';
+import { autocorrelations } from '../stats/autocorrelation.js';
+import { seedOf } from '../stats/generator.js';
 import { type BriefInputs, periodAt } from './inputs.js';
 import { type BriefRecord, recordSchema } from './record.js';
 
@@ -101,13 +101,18 @@ function reportingYears({ series, figures, plan, ahead }: BriefInputs): Span[] {
   });
 }
 
-const contextOf = (inputs: BriefInputs) => ({
-  places: inputs.series.places,
-  ahead: inputs.ahead,
-  season: inputs.series.season,
-  yearStarts: inputs.plan.yearStarts,
-  periods: Array.from({ length: inputs.figures.values.length + inputs.ahead }, (_, t) => periodAt(inputs, t)),
-});
+function contextOf(inputs: BriefInputs): Context {
+  const { series, figures, plan, ahead } = inputs;
+  const first = periodIndex(figures.start, series.every);
+  const times = Array.from({ length: figures.values.length + ahead }, (_, t) => t);
+  return {
+    places: series.places,
+    season: series.season,
+    periods: times.map((t) => periodAt(inputs, t)),
+    positions: times.map((t) => position(first + t, series.every, plan.yearStarts)),
+    events: figures.events,
+  };
+}
 
 function fitPart(fit: Fit, { series }: BriefInputs): BriefRecord['fit'] {
   const standardized = Array.from(fit.standardizedResiduals, missable);
@@ -139,12 +144,14 @@ const missable = (value: number): number | null => (Number.isNaN(value) ? null :
 
 function outlookPart(outlook: Outlook, inputs: BriefInputs): BriefRecord['outlook'] {
   const n = inputs.figures.values.length;
-  const ahead = Array.from({ length: inputs.ahead }, (_, step) => periodAt(inputs, n + step));
   return {
     seed: outlook.seed,
     paths: outlook.paths,
-    periods: outlook.periods.map((period, step) => ({ period: ahead[step], ...period })),
-    totals: outlook.totals.map(({ steps, ...total }) => ({ ...total, periods: periodsOfTotal(total, steps, inputs) })),
+    periods: outlook.periods.map((period, step) => ({ period: periodAt(inputs, n + step), ...period })),
+    totals: outlook.totals.map(({ steps, ...total }) => ({
+      ...total,
+      periods: steps.map((step) => periodAt(inputs, n + step)),
+    })),
     heldAtZero: outlook.heldAtZero,
   };
 }

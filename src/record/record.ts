@@ -72,8 +72,10 @@ const workedTerm = z.strictObject({
  * `transformed`, which the scale turns back into the middle. The middle plus `to-expected` is `expected`.
  */
 const backLine = z.strictObject({
-  kind: z.enum(['base', 'growth', 'transformed', 'middle', 'to-expected', 'expected']),
+  kind: z.enum(['base', 'effect', 'growth', 'transformed', 'middle', 'to-expected', 'expected']),
   period: period.nullable(),
+  /** The name of the effect, for `effect`: a factor on the log scale, else an addend. */
+  coefficient: z.string().nullable(),
   /** How often a base figure multiplies (transformed: is added); negative where it divides (is taken off). */
   power: z.int().nullable(),
   value: number,

@@ -1,0 +1,83 @@
+/**
+ * Why the outlook is what it is: the difference equation, the worked sum, what each coefficient means, the numbers as
+ * they are printed, and the facts that sentences are chosen by. Facts and numbers only: the words are the templates'.
+ */
+import type { Outlook } from '../outlook/outlook.js';
+import type { Fit } from '../sarima/fit.js';
+import { piWeights, psiWeights } from '../sarima/weights.js';
+import { type Expansion, expand, expandDifferenced, type LagTerm, weightTex } from './expand.js';
+import { factsOf } from './facts.js';
+import { meanings } from './meanings.js';
+import { printedNumbers } from './printed.js';
+import { typeset } from './typeset.js';
+import { workedSum } from './worked-sum.js';
+
+/** What explaining needs to know of the series beside the fit. Arrays run from the first figure to the last period ahead. */
+export interface Context {
+  /** Decimal places shown. */
+  readonly places: number;
+  /** Periods in a year. */
+  readonly season: number;
+  /** SDMX text of each period. */
+  readonly periods: readonly string[];
+  /** Position of each period in its reporting year, from 1. */
+  readonly positions: readonly number[];
+  readonly events: readonly {
+    readonly what: string;
+    readonly from: string;
+    readonly to: string | null;
+    readonly effect: 'passing' | 'lasting';
+    readonly coefficient: string;
+  }[];
+}
+
+export function explain(fit: Fit, outlook: Outlook, context: Context) {
+  return {
+    equation: equationOf(fit, outlook, context),
+    printed: printedNumbers(outlook, context.places, lastYears(fit, outlook, context)),
+    facts: factsOf(fit, outlook, context),
+  };
+}
+
+function equationOf(fit: Fit, outlook: Outlook, context: Context) {
+  const named = (effect: 'passing' | 'lasting') =>
+    new Set(context.events.filter((event) => event.effect === effect).map((event) => event.coefficient));
+  const { d, D, m } = fit.form;
+  return {
+    ...written(expand(fit)),
+    differenced: { definition: { regular: d, seasonal: D, season: m }, ...written(expandDifferenced(fit)) },
+    tex: typeset(fit),
+    workedSum: workedSum(fit, {
+      middle: outlook.periods[0].middle,
+      expected: outlook.periods[0].expected,
+      heldAtZero: outlook.heldAtZero,
+      places: context.places,
+      periods: context.periods,
+    }),
+    weights: pastWeights(fit, context),
+    echo: Array.from(psiWeights(fit, 2 * context.season + 1), (effect, step) => ({ step, effect })),
+    meanings: meanings(fit, named('lasting'), named('passing')),
+  };
+}
+
+const written = ({ lags, surprises, constant }: Expansion) => ({
+  lags: lags.map(writtenTerm),
+  surprises: surprises.map(writtenTerm),
+  constant,
+});
+
+const writtenTerm = ({ lag, weight, products }: LagTerm) => ({ lag, weight, tex: weightTex(products) });
+
+/** The weights that an unending past would have, over three years or as far as the figures go. */
+function pastWeights(fit: Fit, { season }: Context) {
+  const count = Math.min(Math.max(3 * season, 8), fit.values.length);
+  return Array.from(piWeights(fit, count), (weight, i) => ({ lag: i + 1, weight }));
+}
+
+/** For each period ahead the figure a year before; null where it is missing or itself ahead. */
+function lastYears({ values }: Fit, { periods }: Outlook, { season }: Context): (number | null)[] {
+  return periods.map((_, h) => {
+    const value = values[values.length + h - season];
+    return value === undefined || Number.isNaN(value) ? null : value;
+  });
+}

@@ -1,0 +1,172 @@
+/** Facts about a series that the sentences of page 1 are chosen by. Thresholds are common practice unless said otherwise. */
+import type { Outlook } from '../outlook/outlook.js';
+import type { Fit } from '../sarima/fit.js';
+import { parseScale } from '../sarima/scale.js';
+import { psiWeights } from '../sarima/weights.js';
+import type { Context } from './explain.js';
+
+export interface Facts {
+  readonly direction: {
+    readonly kind: 'rising' | 'falling' | 'level' | 'unknown';
+    readonly perYear: number | null;
+    readonly years: number;
+  };
+  readonly season: {
+    readonly strength: 'strong' | 'weak' | 'none';
+    readonly peak: readonly number[];
+    readonly share: number | null;
+    readonly trough: number;
+    readonly troughShare: number | null;
+    readonly everyYear: boolean;
+    readonly fullYears: number;
+  } | null;
+  readonly surprise: {
+    readonly period: string;
+    readonly actual: number;
+    readonly expected: number;
+    readonly relative: number | null;
+    readonly size: 'none' | 'small' | 'large';
+    readonly carryNext: number;
+    readonly carryYear: number | null;
+  } | null;
+  readonly relativeRange: number | null;
+  readonly caveats: readonly Caveat[];
+}
+
+export interface Caveat {
+  readonly id:
+    | 'unsettled-fit'
+    | 'short-history'
+    | 'missing-figures'
+    | 'wide-range'
+    | 'leftover-pattern'
+    | 'near-limit'
+    | 'event-set-aside'
+    | 'lasting-event'
+    | 'ranges-untested';
+  readonly count: number | null;
+  readonly share: number | null;
+  readonly what: string | null;
+  readonly from: string | null;
+  readonly to: string | null;
+}
+
+export function factsOf(fit: Fit, outlook: Outlook, context: Context): Facts {
+  const relativeRange = relativeRangeOf(outlook);
+  return {
+    direction: directionOf(fit, context),
+    season: context.season === 1 ? null : seasonOf(fit, context),
+    surprise: surpriseOf(fit, context),
+    relativeRange,
+    caveats: caveatsOf(fit, context, relativeRange),
+  };
+}
+
+/** Sums over the latest full spans of a year; the mean yearly change over at most five of them. */
+function directionOf({ values }: Fit, { season }: Context): Facts['direction'] {
+  const sums: number[] = [];
+  for (let end = values.length; end >= season && sums.length < 6; end -= season) {
+    const sum = values.slice(end - season, end).reduce((total, value) => total + value, 0);
+    if (!Number.isFinite(sum)) break;
+    sums.push(sum);
+  }
+  const years = sums.length - 1;
+  const [last, first] = [sums[0], sums[years]];
+  if (years < 1 || !(last > 0) || !(first > 0)) return { kind: 'unknown', perYear: null, years: Math.max(years, 0) };
+  const perYear = (last / first) ** (1 / years) - 1;
+  // Under 1% a year nobody acts on it.
+  const kind = Math.abs(perYear) < 0.01 ? 'level' : perYear > 0 ? 'rising' : 'falling';
+  return { kind, perYear, years };
+}
+
+/** Shares of the year by position over the latest full reporting years, at most five. */
+function seasonOf({ values }: Fit, { season, positions }: Context): Facts['season'] {
+  const years: number[][] = [];
+  for (let start = positions.indexOf(1); start >= 0 && start + season <= values.length; start += season)
+    years.push(Array.from(values.slice(start, start + season)));
+  const full = years.filter((year) => year.every((value) => Number.isFinite(value)));
+  if (full.length < 2 || values.some((value) => value < 0)) return null;
+  const recent = full.slice(-5);
+  const shares = Array.from({ length: season }, (_, i) => mean(recent.map((year) => year[i] / total(year))));
+  const even = 1 / season;
+  const highest = Math.max(...shares);
+  const lowest = Math.min(...shares);
+  const top = shares.indexOf(highest);
+  // Neighbours that are clearly above an even share stand with the peak.
+  const peak = [top];
+  for (const side of [-1, 1])
+    for (let i = 1; i < season; i++) {
+      const next = (((top + side * i) % season) + season) % season;
+      if (peak.includes(next) || shares[next] < 1.15 * even) break;
+      if (side < 0) peak.unshift(next);
+      else peak.push(next);
+    }
+  const highestIn = full.map((year) => year.indexOf(Math.max(...year)));
+  // A swing of less than a twentieth of an even share is no season to speak of; under a half it is weak.
+  const swing = (highest - lowest) / even;
+  return {
+    strength: swing < 0.05 ? 'none' : swing < 0.5 ? 'weak' : 'strong',
+    peak: peak.map((i) => i + 1),
+    share: peak.reduce((sum, i) => sum + shares[i], 0),
+    trough: shares.indexOf(lowest) + 1,
+    troughShare: lowest,
+    everyYear: highestIn.every((i) => peak.includes(i)),
+    fullYears: full.length,
+  };
+}
+
+/** The last figure against what the model expected one period before. */
+function surpriseOf(fit: Fit, { season, periods }: Context): Facts['surprise'] {
+  const last = fit.values.length - 1;
+  const residual = fit.residuals[last];
+  const standardized = fit.standardizedResiduals[last];
+  if (!Number.isFinite(residual)) return null;
+  const { to, from } = parseScale(fit.scale);
+  const actual = fit.values[last];
+  const expected = from(to(actual) - residual);
+  const psi = psiWeights(fit, season + 1);
+  // Inside half a standard deviation is what happens in four periods of ten; beyond 1.28 in two of ten.
+  const size = Math.abs(standardized) < 0.5 ? 'none' : Math.abs(standardized) < 1.28 ? 'small' : 'large';
+  return {
+    period: periods[last],
+    actual,
+    expected,
+    relative: expected > 0 ? (actual - expected) / expected : null,
+    size,
+    carryNext: psi[1],
+    carryYear: season > 1 ? psi[season] : null,
+  };
+}
+
+function relativeRangeOf({ totals }: Outlook): number | null {
+  const { expected, range80 } = totals[0];
+  return expected > 0 ? (range80[1] - range80[0]) / expected : null;
+}
+
+/** Only what this series has earned, worst first. */
+function caveatsOf(fit: Fit, { season, events }: Context, relativeRange: number | null): Caveat[] {
+  const none = { count: null, share: null, what: null, from: null, to: null };
+  const years = fit.values.length / season;
+  const missing = fit.values.filter(Number.isNaN).length;
+  return [
+    ...(fit.settled ? [] : [{ ...none, id: 'unsettled-fit' as const }]),
+    // Four full years is the least from which a season is learned with some trust.
+    ...(season > 1 && years < 6 ? [{ ...none, id: 'short-history' as const, count: Math.floor(years) }] : []),
+    ...(relativeRange !== null && relativeRange > 0.5
+      ? [{ ...none, id: 'wide-range' as const, share: relativeRange }]
+      : []),
+    ...(missing > 0 ? [{ ...none, id: 'missing-figures' as const, count: missing }] : []),
+    ...events.map(({ what, from, to, effect }) => ({
+      ...none,
+      id: effect === 'passing' ? ('event-set-aside' as const) : ('lasting-event' as const),
+      what,
+      from,
+      to,
+    })),
+    ...(fit.nearUnitRoots.length > 0 || fit.nearlyCancels ? [{ ...none, id: 'near-limit' as const }] : []),
+    { ...none, id: 'ranges-untested' as const },
+  ];
+}
+
+const total = (values: readonly number[]): number => values.reduce((sum, value) => sum + value, 0);
+const mean = (values: readonly number[]): number => total(values) / values.length;

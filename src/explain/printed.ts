@@ -1,0 +1,93 @@
+/**
+ * The numbers as page 1 prints them.
+ *
+ * The rule: a number is rounded to the largest power of ten that is not above a tenth of the narrowest 8-in-10 range
+ * beside it, and never finer than the plan's decimal places. The total's expected value is the sum of the printed rows.
+ * Changes are in whole per cent of the printed numbers, so that a reader can check them.
+ */
+import type { Outlook } from '../outlook/outlook.js';
+import { decimal, roundTo, sum, toNumber } from './decimals.js';
+
+export interface PrintedRow {
+  readonly expected: number;
+  readonly range80: [number, number];
+  readonly range95: [number, number];
+  readonly lastYear: number | null;
+  readonly change: number | null;
+}
+
+export interface Printed {
+  readonly places: number;
+  readonly step: number;
+  readonly periods: readonly PrintedRow[];
+  readonly total: PrintedRow;
+  readonly answer: {
+    readonly places: number;
+    readonly step: number;
+    readonly expected: number;
+    readonly range80: [number, number];
+    readonly lastYear: number | null;
+    readonly change: number | null;
+  };
+}
+
+/** `lastYears`: for each period ahead the figure a year before, null where missing or itself ahead. */
+export function printedNumbers(outlook: Outlook, places: number, lastYears: readonly (number | null)[]): Printed {
+  const total = outlook.totals[0];
+  const rowPlaces = placesFor(Math.min(...outlook.periods.map(({ range80 }) => width(range80))), places);
+  const row = (numbers: Omit<PrintedRow, 'lastYear' | 'change'>, before: number | null): PrintedRow => {
+    const lastYear = before === null ? null : roundTo(before, Math.max(places, 0));
+    return { ...numbers, lastYear, change: change(numbers.expected, lastYear) };
+  };
+  const periods = outlook.periods.map((period, h) =>
+    row(
+      {
+        expected: roundTo(period.expected, rowPlaces),
+        range80: both(period.range80, rowPlaces),
+        range95: both(period.range95, rowPlaces),
+      },
+      lastYears[h],
+    ),
+  );
+  const before = lastYears.every((value) => value !== null)
+    ? toNumber(sum(lastYears.map((value) => decimal(value ?? 0, places))))
+    : null;
+  const totalPlaces = placesFor(width(total.range80), places);
+  const summed = toNumber(sum(periods.map(({ expected }) => decimal(expected, Math.max(rowPlaces, 0)))));
+  const answerExpected = roundTo(total.expected, totalPlaces);
+  return {
+    places: Math.max(rowPlaces, 0),
+    step: 10 ** -rowPlaces,
+    periods,
+    total: row(
+      { expected: summed, range80: both(total.range80, totalPlaces), range95: both(total.range95, totalPlaces) },
+      before,
+    ),
+    answer: {
+      places: Math.max(totalPlaces, 0),
+      step: 10 ** -totalPlaces,
+      expected: answerExpected,
+      range80: both(total.range80, totalPlaces),
+      lastYear: before,
+      change: change(summed, before),
+    },
+  };
+}
+
+const width = ([low, high]: readonly [number, number]): number => high - low;
+
+const both = ([low, high]: readonly [number, number], places: number): [number, number] => [
+  roundTo(low, places),
+  roundTo(high, places),
+];
+
+/** Decimal places (negative: tens, hundreds) that a range of this width warrants, `most` at the finest. */
+function placesFor(range: number, most: number): number {
+  if (!(range > 0)) return most;
+  return Math.min(-Math.floor(Math.log10(range / 10) + 1e-12), most);
+}
+
+function change(now: number, before: number | null): number | null {
+  if (before === null || !(before > 0)) return null;
+  return roundTo((100 * (now - before)) / before, 0);
+}
