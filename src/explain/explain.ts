@@ -5,31 +5,13 @@
 import type { Outlook } from '../outlook/outlook.js';
 import type { Fit } from '../sarima/fit.js';
 import { piWeights, psiWeights } from '../sarima/weights.js';
+import type { Context } from './context.js';
 import { type Expansion, expand, expandDifferenced, type LagTerm, weightTex } from './expand.js';
 import { factsOf } from './facts.js';
 import { meanings } from './meanings.js';
 import { printedNumbers } from './printed.js';
 import { typeset } from './typeset.js';
 import { workedSum } from './worked-sum.js';
-
-/** What explaining needs to know of the series beside the fit. Arrays run from the first figure to the last period ahead. */
-export interface Context {
-  /** Decimal places shown. */
-  readonly places: number;
-  /** Periods in a year. */
-  readonly season: number;
-  /** SDMX text of each period. */
-  readonly periods: readonly string[];
-  /** Position of each period in its reporting year, from 1. */
-  readonly positions: readonly number[];
-  readonly events: readonly {
-    readonly what: string;
-    readonly from: string;
-    readonly to: string | null;
-    readonly effect: 'passing' | 'lasting';
-    readonly coefficient: string;
-  }[];
-}
 
 export function explain(fit: Fit, outlook: Outlook, context: Context) {
   return {

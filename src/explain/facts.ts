@@ -3,7 +3,7 @@ import type { Outlook } from '../outlook/outlook.js';
 import type { Fit } from '../sarima/fit.js';
 import { parseScale } from '../sarima/scale.js';
 import { psiWeights } from '../sarima/weights.js';
-import type { Context } from './explain.js';
+import type { Context } from './context.js';
 
 export interface Facts {
   readonly direction: {

@@ -6,7 +6,8 @@
  * Nothing but the inputs goes in: no file, no clock. The same inputs give the same record, today and in ten years.
  */
 import { periodIndex, position, yearOf } from '../calendar/calendar.js';
-import { type Context, explain } from '../explain/explain.js';
+import type { Context } from '../explain/context.js';
+import { explain } from '../explain/explain.js';
 import { makeOutlook, type Outlook, type Span } from '../outlook/outlook.js';
 import { type Fit, fitModel } from '../sarima/fit.js';
 import { autocorrelations } from '../stats/autocorrelation.js';
