@@ -1,0 +1,194 @@
+/** The picture of page 1: about five years of figures and the outlook with its ranges. */
+import type { TopLevelSpec } from 'vega-lite';
+import { periodIndex, periodText, position } from '../calendar/calendar.js';
+import type { BriefRecord } from '../record/record.js';
+import { draw, labelled } from './draw.js';
+import { ACCENT, BAND, HAIRLINE, INK, LABEL, PAPER, QUIET } from './look.js';
+import { niceTicks, tickPlaces } from './ticks.js';
+
+export interface OutlookWords {
+  readonly described: string;
+  readonly eight: string;
+  readonly nineteen: string;
+  readonly lastYear: string;
+  readonly number: (value: number, places: number) => string;
+  /** A short name for a period ahead, on the rail. */
+  readonly railName: (period: string) => string;
+  /** The name of the year that a period begins, under the axis. */
+  readonly yearName: (period: string) => string;
+}
+
+export const WIDTH = 658;
+const HEIGHT = 216;
+/** Room at the right for the bands' labels. */
+const LABELS = 74;
+
+/** Whether the axis starts at zero: where the figures' own span is not small beside their level. */
+export function startsAtZero({ figures, outlook }: BriefRecord): boolean {
+  const values = [...shownValues(figures.values, 20), ...outlook.periods.flatMap(({ range95 }) => range95)];
+  const [low, high] = [Math.min(...values), Math.max(...values)];
+  return low < 0 || low < 0.6 * high;
+}
+
+const shownValues = (values: readonly (number | null)[], count: number): number[] =>
+  values.slice(-count).filter((value) => value !== null);
+
+export async function outlookChart(record: BriefRecord, words: OutlookWords): Promise<string> {
+  const { series, figures, outlook, printed, plan } = record;
+  const { every, season } = series;
+  const shown = Math.min(figures.values.length, Math.max(5 * season, 12));
+  const first = periodIndex(figures.start, every);
+  const n = figures.values.length;
+  const text = (t: number) => periodText(first + t, every);
+
+  const history = Array.from({ length: shown }, (_, i) => n - shown + i).map((t) => ({ t, y: figures.values[t] }));
+  const ahead = outlook.periods.map(({ expected, range80, range95 }, h) => ({
+    t: n + h,
+    y: expected,
+    low: range80[0],
+    high: range80[1],
+    least: range95[0],
+    most: range95[1],
+    before: figures.values[n + h - season] ?? null,
+    name: words.railName(text(n + h)),
+    label: words.number(printed.periods[h].expected, printed.places),
+  }));
+  const last = figures.values[n - 1];
+  const joined = [{ t: n - 1, y: last, low: last, high: last }, ...ahead];
+
+  const values = [
+    ...history.flatMap(({ y }) => (y === null ? [] : [y])),
+    ...ahead.flatMap(({ least, most, before }) => [least, most, ...(before === null ? [] : [before])]),
+  ];
+  const zero = startsAtZero(record);
+  const ticks = niceTicks(
+    zero ? Math.min(0, ...values) : Math.min(...values),
+    Math.max(...values, zero ? 0 : -Infinity),
+    5,
+  );
+  const places = tickPlaces(ticks);
+
+  const years = Array.from({ length: shown + ahead.length }, (_, i) => n - shown + i).filter(
+    (t) => position(first + t, every, plan.yearStarts) === 1,
+  );
+  const yearEvery = Math.ceil(years.length / 10);
+  const events = figures.events.flatMap(({ what, from, to }) => {
+    const [start, end] = [periodIndex(from, every) - first, to === null ? n - 1 : periodIndex(to, every) - first];
+    const seen = history.filter(({ t, y }) => t >= start && t <= end && y !== null);
+    const lowest = seen.reduce<(typeof seen)[number] | undefined>(
+      (a, b) => (a && (a.y ?? 0) <= (b.y ?? 0) ? a : b),
+      undefined,
+    );
+    return lowest === undefined ? [] : [{ t: lowest.t, y: lowest.y, what }];
+  });
+
+  const end = ahead[ahead.length - 1];
+  const endLabels = spread(
+    [
+      { y: end.most, text: words.nineteen, color: QUIET },
+      { y: end.high, text: words.eight, color: ACCENT },
+      ...(end.before === null ? [] : [{ y: end.before, text: words.lastYear, color: QUIET }]),
+    ],
+    ticks,
+  ).map((label) => ({ ...label, t: end.t }));
+
+  const steps = shown + ahead.length - 1;
+  const x = {
+    field: 't',
+    type: 'quantitative',
+    scale: { domain: [n - shown - 0.4, n - shown + steps + 0.4], nice: false, zero: false },
+    axis: {
+      values: years.filter((_, i) => i % yearEvery === 0),
+      labelExpr:
+        years.map((t) => `datum.value === ${t} ? ${JSON.stringify(words.yearName(text(t)))}`).join(' : ') + ` : ''`,
+      title: null,
+      domain: true,
+      labelFlush: false,
+    },
+  } as const;
+  const y = {
+    field: 'y',
+    type: 'quantitative',
+    scale: { domain: [ticks[0], ticks[ticks.length - 1]], nice: false, zero: false },
+    axis: { values: ticks, labelExpr: labelled(ticks, (value) => words.number(value, places)), title: null },
+  } as const;
+  const point = (fields: string) => ({ x, y: { ...y, field: fields } });
+  // With many periods ahead the rail names every second, third … only.
+  const railStep = Math.ceil((ahead.length * 38) / (((WIDTH - LABELS - 60) * ahead.length) / (steps + 1) + 1));
+  const rail = ahead.filter((_, h) => (ahead.length - 1 - h) % railStep === 0);
+
+  const spec = {
+    width: WIDTH - LABELS - 58,
+    height: HEIGHT,
+    autosize: { type: 'pad' },
+    layer: [
+      {
+        data: { values: joined },
+        mark: { type: 'area', color: BAND },
+        encoding: { x, y: { ...y, field: 'low' }, y2: { field: 'high' } },
+      },
+      {
+        data: { values: [{ t: n - 0.5 }] },
+        mark: { type: 'rule', color: HAIRLINE, strokeDash: [2, 2] },
+        encoding: { x },
+      },
+      {
+        data: { values: ahead },
+        mark: { type: 'rule', color: ACCENT, strokeWidth: 0.9 },
+        encoding: { x, y: { ...y, field: 'least' }, y2: { field: 'most' } },
+      },
+      {
+        data: { values: ahead.filter(({ before }) => before !== null) },
+        mark: { type: 'tick', color: QUIET, thickness: 1.1, size: 13, orient: 'horizontal' },
+        encoding: point('before'),
+      },
+      { data: { values: history }, mark: { type: 'line', color: INK, strokeWidth: 1.3 }, encoding: { x, y } },
+      {
+        data: { values: history.filter(({ y }) => y !== null) },
+        mark: { type: 'point', filled: true, color: INK, size: 15, opacity: 1 },
+        encoding: { x, y },
+      },
+      { data: { values: joined }, mark: { type: 'line', color: ACCENT, strokeWidth: 2 }, encoding: { x, y } },
+      {
+        data: { values: ahead },
+        mark: { type: 'point', filled: true, color: ACCENT, size: 34, opacity: 1, stroke: PAPER, strokeWidth: 1 },
+        encoding: { x, y },
+      },
+      {
+        data: { values: events },
+        mark: { type: 'text', dy: 14, fontStyle: 'italic', color: QUIET, limit: 220 },
+        encoding: { x, y, text: { field: 'what' } },
+      },
+      ...endLabels.map((label) => ({
+        data: { values: [label] },
+        mark: { type: 'text', align: 'left', dx: 9, dy: label.shift, color: label.color, limit: LABELS - 6 },
+        encoding: { x, y, text: { field: 'text' } },
+      })),
+      {
+        data: { values: rail },
+        mark: { type: 'text', color: QUIET, fontSize: LABEL - 1.5 },
+        encoding: { x, y: { value: HEIGHT + 34 }, text: { field: 'name' } },
+      },
+      {
+        data: { values: rail },
+        mark: { type: 'text', color: ACCENT, fontWeight: 600 },
+        encoding: { x, y: { value: HEIGHT + 48 }, text: { field: 'label' } },
+      },
+    ],
+  };
+  return draw(spec as unknown as TopLevelSpec, { locale: plan.locale, described: words.described });
+}
+
+/** Labels at the end of the bands, each at least a line below the one above it; `shift` is in px, downwards. */
+function spread(labels: readonly { y: number; text: string; color: string }[], ticks: readonly number[]) {
+  const perPixel = (ticks[ticks.length - 1] - ticks[0]) / HEIGHT || 1;
+  let lowest = Number.NEGATIVE_INFINITY;
+  return [...labels]
+    .sort((a, b) => b.y - a.y)
+    .map((label) => {
+      const natural = (ticks[ticks.length - 1] - label.y) / perPixel;
+      const placed = Math.max(natural, lowest + LABEL + 2);
+      lowest = placed;
+      return { ...label, shift: placed - natural };
+    });
+}
