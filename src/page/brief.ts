@@ -1,0 +1,229 @@
+/**
+ * A brief from its record: one self-contained HTML document.
+ *
+ *   record -> charts, sentences, tables -> brief.hbs -> the type that the text needs
+ */
+import { barChart } from '../charts/bar-chart.js';
+import { outlookChart, startsAtZero } from '../charts/outlook-chart.js';
+import { residualsChart } from '../charts/residuals-chart.js';
+import type { BriefRecord } from '../record/record.js';
+import { checksOf, pastTable } from './checks.js';
+import { pageStyle, plainText, withType } from './document.js';
+import { equationHtml } from './equation.js';
+import { type Formats, formatsOf } from './formats.js';
+import { madeOf, meaningRows, sumTable } from './how-made.js';
+import { answerSentence, caveatSentences, countedPeriods, reasons } from './sentences.js';
+import type { Theme } from './theme.js';
+
+export interface BriefOptions {
+  /** SHA-256 of the record's file. */
+  readonly fingerprint: string;
+  /** Marked as a trial, which is not filed. */
+  readonly trial: boolean;
+}
+
+export async function renderBrief(record: BriefRecord, theme: Theme, options: BriefOptions): Promise<string> {
+  const formats = formatsOf(record.plan, record.series.every);
+  const { plan, series, outlook } = record;
+  const span = formats.span(outlook.periods[0].period, outlook.periods[outlook.periods.length - 1].period);
+  const every = theme.say(`every.${series.every}.one`);
+  const view = {
+    lang: plan.locale,
+    title: `${series.name}, ${span} · ${plan.preparedFor}`,
+    style: await pageStyle(theme, plan.paper, {
+      left: theme.say('running', { series: series.name, brief: record.brief }),
+      page: theme.say('page'),
+      of: theme.say('of'),
+    }),
+    trial: options.trial ? theme.say('trial') : null,
+    preparedFor: plan.preparedFor,
+    heading: plan.heading,
+    issued: formats.date(record.issued),
+    brief: record.brief,
+    name: series.name,
+    scope: theme.say('in-unit', { span, unit: series.unit }),
+    answer: answerSentence(record, theme, formats),
+    picture: await pictureOf(record, theme, formats, every),
+    figures: figuresTable(record, theme, formats, every),
+    reasons: reasons(record, theme, formats),
+    untested: theme.say('trust.untested', { every: theme.say(`every.${series.every}.other`) }),
+    caveats: caveatSentences(record, theme, formats),
+    made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
+    sum: sumTable(record, theme, formats),
+    meanings: meaningRows(record, theme, formats),
+    weights: await weightsOf(record, theme, formats),
+    echo: await echoOf(record, theme, formats),
+    checks: await checksCharts(record, theme, formats),
+    data: checksOf(record, theme, formats),
+    past: pastTable(record, theme, formats),
+    file: fileLines(record, theme, formats, options),
+    disclaimer: theme.say('disclaimer'),
+  };
+  return withType(theme.brief(view));
+}
+
+async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, every: string) {
+  const { series, figures, outlook, printed } = record;
+  const last = outlook.periods[outlook.periods.length - 1].period;
+  const periods = outlook.periods.map(({ period }, h) => ({ period, value: printed.periods[h].expected }));
+  const lowest = periods.reduce((a, b) => (b.value < a.value ? b : a));
+  const highest = periods.reduce((a, b) => (b.value > a.value ? b : a));
+  const end = formats.period(last, 'long');
+  const described = theme.say('picture.described', {
+    series: series.name,
+    unit: series.unit,
+    every,
+    start: formats.period(figures.start, 'short'),
+    last: formats.period(record.facts.surprise?.period ?? figures.start, 'short'),
+    end,
+    lowest: formats.number(lowest.value, printed.places),
+    lowestPeriod: formats.period(lowest.period, 'short'),
+    highest: formats.number(highest.value, printed.places),
+    highestPeriod: formats.period(highest.period, 'short'),
+  });
+  return {
+    title: theme.say('picture.title', { unit: capital(series.unit), every, end }),
+    note: startsAtZero(record) ? null : theme.say('picture.not-from-zero'),
+    svg: await outlookChart(record, {
+      described: plainText(described),
+      eight: theme.say('picture.eight'),
+      nineteen: theme.say('picture.nineteen'),
+      lastYear: theme.say('picture.last-year'),
+      number: formats.number,
+      railName: (period) => formats.period(period, 'axis'),
+      yearName: (period) => period.slice(0, 4),
+    }),
+  };
+}
+
+const capital = (text: string): string => text.slice(0, 1).toLocaleUpperCase() + text.slice(1);
+
+function figuresTable({ series, outlook, printed }: BriefRecord, theme: Theme, formats: Formats, every: string) {
+  const and = ([low, high]: readonly [number, number], places: number) =>
+    theme.say('figures.and', { low: formats.number(low, places), high: formats.number(high, places) });
+  const row = (name: string, numbers: typeof printed.total, places: number, rangePlaces: number) => ({
+    name,
+    expected: formats.number(numbers.expected, places),
+    range: and(numbers.range80, rangePlaces),
+    lastYear: numbers.lastYear === null ? '–' : formats.number(numbers.lastYear, series.places),
+    change: numbers.change === null ? '–' : formats.change(numbers.change),
+  });
+  const count = outlook.periods.length;
+  return {
+    heads: {
+      period: theme.say(`figures.period.${series.every}`),
+      expected: theme.say('figures.expected'),
+      range: theme.say('figures.range'),
+      lastYear: theme.say('figures.last-year', { every }),
+      change: theme.say('figures.change'),
+    },
+    rows: outlook.periods.map(({ period }, h) =>
+      row(formats.period(period, 'short'), printed.periods[h], printed.places, printed.places),
+    ),
+    total:
+      count === 1
+        ? null
+        : row(
+            capital(countedPeriods(count, series.every, theme, formats)),
+            printed.total,
+            printed.places,
+            printed.answer.places,
+          ),
+  };
+}
+
+async function weightsOf({ series, equation, plan }: BriefRecord, theme: Theme, formats: Formats) {
+  const many = theme.say(`every.${series.every}.other`);
+  const largest = equation.weights.reduce((a, b) => (Math.abs(b.weight) > Math.abs(a.weight) ? b : a));
+  return {
+    title: theme.say('weights.title', { every: many }),
+    svg: await barChart(
+      { bars: equation.weights.map(({ lag, weight }) => ({ step: lag, value: weight })) },
+      {
+        described: theme.say('weights.described', {
+          count: equation.weights.length,
+          largest: formats.number(largest.weight, 2),
+          lag: largest.lag,
+        }),
+        axis: theme.say('weights.axis', { every: many }),
+        number: formats.number,
+        locale: plan.locale,
+      },
+    ),
+  };
+}
+
+async function echoOf({ series, equation, plan }: BriefRecord, theme: Theme, formats: Formats) {
+  const many = theme.say(`every.${series.every}.other`);
+  const last = equation.echo[equation.echo.length - 1];
+  return {
+    title: theme.say('echo.title'),
+    svg: await barChart(
+      { bars: equation.echo.map(({ step, effect }) => ({ step, value: effect })), ahead: true },
+      {
+        described: theme.say('echo.described', {
+          every: many,
+          next: formats.number(equation.echo[1]?.effect ?? 0, 2),
+          last: formats.number(last.effect, 2),
+          count: last.step,
+        }),
+        axis: theme.say('echo.axis', { every: many }),
+        number: formats.number,
+        locale: plan.locale,
+      },
+    ),
+  };
+}
+
+async function checksCharts(record: BriefRecord, theme: Theme, formats: Formats) {
+  const { series, fit, plan } = record;
+  const known = fit.standardizedResiduals.filter((value) => value !== null);
+  const words = { number: formats.number, locale: plan.locale };
+  return {
+    residuals: {
+      title: theme.say('checks.residuals.title', { every: theme.say(`every.${series.every}.one`) }),
+      svg: await residualsChart(record, {
+        ...words,
+        described: theme.say('checks.residuals.described', {
+          outside: known.filter((value) => Math.abs(value) > 2).length,
+          count: known.length,
+        }),
+        yearName: (period) => period.slice(0, 4),
+      }),
+    },
+    pattern: {
+      title: theme.say('checks.pattern.title'),
+      note: theme.say('checks.pattern.note'),
+      svg: await barChart(
+        {
+          bars: fit.autocorrelations.map((value, i) => ({ step: i + 1, value })),
+          bound: fit.autocorrelationBound,
+        },
+        {
+          ...words,
+          described: theme.say('checks.pattern.described', {
+            count: fit.autocorrelations.length,
+            bound: formats.number(fit.autocorrelationBound, 2),
+            outside: fit.autocorrelations.filter((value) => Math.abs(value) > fit.autocorrelationBound).length,
+          }),
+          axis: theme.say('checks.pattern.axis', { every: theme.say(`every.${series.every}.other`) }),
+        },
+      ),
+    },
+  };
+}
+
+function fileLines(record: BriefRecord, theme: Theme, formats: Formats, { fingerprint }: BriefOptions): string[] {
+  const { fit, plan, figures, software, series } = record;
+  return [
+    theme.say('checks.file.fit', {
+      likelihood: formats.number(fit.logLikelihood, 2),
+      aicc: fit.aicc === null ? '–' : formats.number(fit.aicc, 2),
+      observations: fit.observations,
+      variance: Number(fit.innovationVariance.toPrecision(4)).toString(),
+    }),
+    theme.say('checks.file.fingerprint', { brief: series.slug, fingerprint }),
+    theme.say('checks.file.program', { version: software.version, figures: figures.sha256 }),
+    ...(plan.preparedBy === null ? [] : [theme.say('prepared', { by: plan.preparedBy })]),
+  ];
+}

@@ -1,0 +1,62 @@
+/** The file copy: what was done to the data, how the ranges were made, all past figures. */
+import { periodIndex, periodText, position, yearOf } from '../calendar/calendar.js';
+import type { BriefRecord } from '../record/record.js';
+import type { Formats } from './formats.js';
+import type { Theme } from './theme.js';
+
+export function checksOf({ figures, outlook, series }: BriefRecord, theme: Theme, formats: Formats) {
+  const list = (periods: readonly string[]) => periods.map((period) => formats.period(period, 'short')).join('; ');
+  const found = figures.findings.map(({ id, periods }) => {
+    const key = `checks.data.${id}`;
+    const form = formats.plural(periods.length) === 'one' ? 'one' : 'other';
+    return theme.say(theme.has(key) ? key : `${key}.${form}`, { count: periods.length, list: list(periods) });
+  });
+  const events = figures.events.map(({ what, from, to, effect }) =>
+    theme.say(`checks.data.${effect}`, { what, span: formats.span(from, to ?? from) }),
+  );
+  const data = [...found, ...events];
+  const ranges = theme.say('checks.ranges.text', {
+    paths: formats.number(outlook.paths, 0),
+    seed: String(outlook.seed),
+    every: theme.say(`every.${series.every}.other`),
+  });
+  return {
+    done: data.length === 0 ? [theme.say('checks.data.nothing')] : data,
+    ranges: outlook.heldAtZero ? `${ranges} ${theme.say('checks.ranges.held')}` : ranges,
+  };
+}
+
+/** A row a reporting year, a column a position; one column where a year is one period. */
+export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, formats: Formats) {
+  const { every, season } = series;
+  const first = periodIndex(figures.start, every);
+  const marked = new Set(
+    figures.events.flatMap(({ from, to }) => {
+      const [start, end] = [periodIndex(from, every), to === null ? Number.POSITIVE_INFINITY : periodIndex(to, every)];
+      return figures.values.flatMap((_, t) => (first + t >= start && first + t <= end ? [t] : []));
+    }),
+  );
+  const years = new Map<number, { text: string; isMarked: boolean; isMissing: boolean }[]>();
+  figures.values.forEach((value, t) => {
+    const year = yearOf(first + t, every, plan.yearStarts);
+    const row =
+      years.get(year) ?? Array.from({ length: season }, () => ({ text: '', isMarked: false, isMissing: false }));
+    row[position(first + t, every, plan.yearStarts) - 1] = {
+      text: value === null ? theme.say('checks.past.missing') : formats.number(value, series.places),
+      isMarked: marked.has(t),
+      isMissing: value === null,
+    };
+    years.set(year, row);
+  });
+  return {
+    title: theme.say('checks.past.title'),
+    year: theme.say('checks.past.year'),
+    columns: Array.from({ length: season }, (_, i) =>
+      season <= 12
+        ? formats.period(periodText(first - position(first, every, plan.yearStarts) + 1 + i, every), 'axis')
+        : `${i + 1}`,
+    ),
+    rows: [...years].map(([year, cells]) => ({ year: String(year), cells })),
+    note: marked.size > 0 ? theme.say('checks.past.marked', { every: theme.say(`every.${every}.other`) }) : null,
+  };
+}

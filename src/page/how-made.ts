@@ -1,0 +1,203 @@
+/** The page that shows how the forecast is made: the model in words and equations, the worked sum, the coefficients. */
+import type { BriefRecord } from '../record/record.js';
+import type { Formats } from './formats.js';
+import type { Theme } from './theme.js';
+
+export function madeOf(record: BriefRecord, theme: Theme, formats: Formats, equation: (tex: string) => string) {
+  const { series, model, equation: shown, outlook } = record;
+  const { regular, seasonal } = shown.differenced.definition;
+  const every = theme.say(`every.${series.every}.one`);
+  const scale = model.scale.split(' ')[0];
+  const differencing = theme.has(`made.what.${regular}${seasonal}`) ? `${regular}${seasonal}` : 'other';
+  const hasAr = shown.differenced.lags.length > 0;
+  const hasMa = shown.differenced.surprises.length > 0;
+  const then = hasAr && hasMa ? 'both' : hasAr ? 'ar' : hasMa ? 'ma' : 'none';
+  const { tex } = shown;
+  const titled = (key: string, text: string | null) =>
+    text === null ? [] : [{ title: theme.say(`made.${key}`), html: equation(text) }];
+  return {
+    paragraph: [
+      theme.say('made.lead', { period: formats.period(outlook.periods[0].period, 'long') }),
+      theme.say(`made.scale.${scale}`, { what: theme.say(`made.what.${differencing}`, { every }) }),
+      theme.say(`made.then.${then}`),
+      theme.say('made.last', { unit: series.unit }),
+    ].join(' '),
+    reason: model.reason === null ? null : theme.say('made.reason', { reason: model.reason }),
+    notation: theme.say('made.notation', { form: formText(model.form), scale: theme.say(`made.on.${scale}`) }),
+    note: theme.say('made.symbols-note', { every, 'every-other': theme.say(`every.${series.every}.other`) }),
+    equations: [
+      ...titled('backshift', tex.backshift),
+      ...titled('variable', tex.variableDefinition),
+      ...titled('expanded', tex.symbols),
+      ...titled('numbers', tex.numbers),
+      ...(tex.differencedDefinition === null
+        ? []
+        : [
+            {
+              title: theme.say('made.differenced'),
+              html: [tex.differencedDefinition, tex.differencedNumbers ?? ''].map(equation).join(''),
+            },
+          ]),
+    ],
+  };
+}
+
+const formText = (form: string): string => form.replace(')x(', ') × (');
+
+type Worked = BriefRecord['equation']['workedSum'];
+
+export function sumTable(record: BriefRecord, theme: Theme, formats: Formats) {
+  const { series, printed, equation } = record;
+  const sum = equation.workedSum;
+  const period = formats.period(sum.period, 'short');
+  const lead = sum.unit === 'units' ? 'value' : sum.unit === 'log-hundredths' ? 'difference' : 'transformed';
+  const totalKey = sum.variable === 'value' ? 'value' : 'difference';
+  const first = printed.periods[0].expected;
+  return {
+    title: theme.say('sum.title', { period }),
+    lead: theme.say(`sum.lead.${lead}`, { unit: series.unit }),
+    heads: ['what', 'known', 'weight', 'product'].map((key) => theme.say(`sum.${key}`)),
+    rows: sum.terms.map((term) => ({
+      what: `${termName(term, sum, record, theme, formats)}${term.smoothed ? theme.say('sum.smoothed') : ''}`,
+      known: term.value === null ? '' : formats.number(term.value, term.decimals.value),
+      weight: term.weight === null ? '' : formats.number(term.weight, term.decimals.weight),
+      product: formats.number(term.product, sum.decimals.product),
+    })),
+    total: {
+      what: theme.say(`sum.total.${totalKey}`, { period, unit: series.unit }),
+      product: formats.number(sum.total, sum.decimals.total),
+    },
+    back: sum.back.map((line) => ({
+      what: `${backName(line, sum, record, theme, formats)}${line.smoothed ? theme.say('sum.smoothed') : ''}`,
+      product: formats.number(line.value, line.decimals),
+      isResult: line.kind === 'expected',
+    })),
+    rounded: first === sum.expected ? null : theme.say('sum.rounded', { shown: formats.number(first, printed.places) }),
+  };
+}
+
+function termName(
+  term: Worked['terms'][number],
+  sum: Worked,
+  record: BriefRecord,
+  theme: Theme,
+  formats: Formats,
+): string {
+  const period = term.period === null ? '' : formats.period(term.period, 'short');
+  switch (term.kind) {
+    case 'past':
+      return term.period === null ? theme.say('sum.earlier') : theme.say(`sum.past.${sum.variable}`, { period });
+    case 'surprise':
+      return term.period === null ? theme.say('sum.earlier') : theme.say('sum.surprise', { period });
+    case 'effect-off':
+    case 'effect-on':
+      return theme.say(`sum.${term.kind}`, { what: eventName(record, term.coefficient) });
+    default:
+      return theme.say(`sum.${term.kind}`);
+  }
+}
+
+function backName(
+  line: Worked['back'][number],
+  sum: Worked,
+  record: BriefRecord,
+  theme: Theme,
+  formats: Formats,
+): string {
+  const period = line.period === null ? formats.period(sum.period, 'short') : formats.period(line.period, 'short');
+  if (line.kind === 'effect') return theme.say('sum.effect', { what: eventName(record, line.coefficient) });
+  if (line.kind !== 'base') return theme.say(`sum.${line.kind}`, { period, unit: record.series.unit });
+  const power = line.power ?? 1;
+  const isLog = sum.unit === 'log-hundredths';
+  const key = power > 0 ? (isLog ? 'times' : 'plus') : isLog ? 'divided' : 'minus';
+  const isFirst = sum.back[0] === line && power > 0 && isLog;
+  const words = theme.say(isFirst ? 'sum.base' : `sum.${key}`, { period });
+  return Math.abs(power) === 1 ? words : `${words} (${Math.abs(power)}×)`;
+}
+
+const eventName = ({ figures }: BriefRecord, coefficient: string | null): string =>
+  figures.events.find((event) => event.coefficient === coefficient)?.what ?? coefficient ?? '';
+
+export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats) {
+  const { equation, fit, outlook, series } = record;
+  return {
+    title: theme.say('meaning.title'),
+    heads: [
+      theme.say('meaning.symbol'),
+      theme.say('meaning.value'),
+      theme.say('meaning.likely'),
+      theme.say('meaning.says'),
+      theme.say('meaning.moves', { period: formats.period(outlook.periods[0].period, 'short') }),
+    ],
+    rows: equation.meanings.map((meaning, i) => {
+      const places = decimalsFor(meaning.value);
+      const number = (value: number) => formats.number(value, places);
+      const moves = meaning.sensitivity;
+      return {
+        symbol: fit.coefficients[i].symbol,
+        value: number(meaning.value),
+        likely:
+          meaning.range === null
+            ? theme.say('meaning.unknown')
+            : theme.say('figures.and', { low: number(meaning.range[0]), high: number(meaning.range[1]) }),
+        says: meaningSentence(record, meaning, fit.coefficients[i].symbol, theme, formats),
+        moves:
+          moves === null
+            ? '–'
+            : `${formats.number(Math.abs(moves), Math.max(series.places, Math.abs(moves) < 1 ? 1 : 0))} ${series.unit}`,
+      };
+    }),
+  };
+}
+
+/** Two places for numbers about one, fewer for large ones. */
+const decimalsFor = (value: number): number => (Math.abs(value) >= 100 ? 0 : Math.abs(value) >= 10 ? 1 : 2);
+
+type Meaning = BriefRecord['equation']['meanings'][number];
+
+function meaningSentence(
+  record: BriefRecord,
+  meaning: Meaning,
+  symbol: string,
+  theme: Theme,
+  formats: Formats,
+): string {
+  const { series, model, equation } = record;
+  const every = theme.say(`every.${series.every}.one`);
+  const share = formats.share(Math.abs(meaning.value));
+  const { regular, seasonal } = equation.differenced.definition;
+  const facts = { symbol, every, share, rest: formats.share(Math.max(0, 1 - Math.abs(meaning.value))) };
+  if (meaning.size === 'none') return theme.say('meaning.none', facts);
+  const sign = meaning.value < 0 ? '-negative' : '';
+  switch (meaning.role) {
+    case 'ar':
+    case 'seasonal-ar':
+      return theme.say(`meaning.${meaning.role}${sign}`, facts);
+    case 'ma':
+      return theme.say(
+        meaning.value > 0 ? 'meaning.ma-positive' : regular > 0 ? 'meaning.ma-differenced' : 'meaning.ma',
+        facts,
+      );
+    case 'seasonal-ma':
+      return theme.say(
+        meaning.value > 0
+          ? 'meaning.seasonal-ma-positive'
+          : seasonal > 0
+            ? 'meaning.seasonal-ma-differenced'
+            : 'meaning.seasonal-ma',
+        facts,
+      );
+    case 'constant': {
+      const per = theme.say(seasonal > 0 ? 'every.year.one' : `every.${series.every}.one`);
+      return theme.say(regular + seasonal === 0 ? 'meaning.constant.level' : 'meaning.constant.drift', { per });
+    }
+    default: {
+      const effect =
+        meaning.percent !== null && model.scale === 'log'
+          ? formats.change(meaning.percent)
+          : `${formats.number(meaning.value, series.places)} ${series.unit}`;
+      const key = meaning.role === 'lasting-event' ? 'meaning.lasting' : 'meaning.event';
+      return theme.say(key, { what: eventName(record, meaning.coefficient), effect });
+    }
+  }
+}
