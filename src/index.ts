@@ -1,1 +1,5 @@
-export {};
+/** The library: what a program can do with seasonal ARIMA models and briefs. */
+export { type WriteOptions, type WriteResult, writeBriefs } from './commands/write.js';
+export { type ForecastPeriod, forecast } from './outlook/outlook.js';
+export { type Coefficient, type Fit, type FitOptions, fitModel } from './sarima/fit.js';
+export { type Form, formText, parseForm } from './sarima/form.js';

@@ -21,7 +21,8 @@ export const openTextWidth = async (): Promise<TextWidth> => {
   const faces = new Map(await Promise.all(styles.map(async (style) => [style, await openFaces(style)] as const)));
   return (text, { family, size, weight = 400, italic = false }) => {
     let ems = 0;
-    for (const run of runsOf(text, faces.get(styleFor(family, weight, italic)) ?? [])) {
+    for (const blank of text.match(BLANKS) ?? []) ems += blanks.get(blank) ?? 0;
+    for (const run of runsOf(text.replace(BLANKS, ''), faces.get(styleFor(family, weight, italic)) ?? [])) {
       // What no face holds is drawn in whatever the reader's machine has: an em is the widest of letters.
       ems += run.face ? runWidth(run.text, run.face) : [...run.text].length;
     }
@@ -34,8 +35,18 @@ interface Run {
   readonly text: string;
 }
 
-/** A space and a hyphen that don't break; the browser draws them as their plain kin where a face lacks them. */
-const standIns: Readonly<Record<string, string>> = { '\u202f': '\u2009', '\u2011': '\u2010' };
+/** Blanks have no outline to measure: their widths in ems, as both families draw them. */
+const blanks: ReadonlyMap<string, number> = new Map([
+  ['\u2002', 0.5],
+  ['\u2009', 0.2],
+  ['\u202f', 0.2],
+  ['\u200b', 0],
+  ['\ufeff', 0],
+]);
+const BLANKS = /[\u2002\u2009\u202f\u200b\ufeff]/g;
+
+/** A hyphen that doesn't break; the browser draws it as its plain kin where a face lacks it. */
+const standIns: Readonly<Record<string, string>> = { '\u2011': '\u2010' };
 
 const runsOf = (text: string, faces: readonly Face[]): Run[] => {
   const runs: Run[] = [];

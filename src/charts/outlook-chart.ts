@@ -19,7 +19,7 @@ export interface OutlookWords {
 }
 
 export const WIDTH = 658;
-const HEIGHT = 216;
+const HEIGHT = 188;
 /** Room at the right for the bands' labels. */
 const LABELS = 74;
 

@@ -73,9 +73,9 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
           perSquare * dot(slopes[i], slopes[j]) + dot(penaltySlopes[i], penaltySlopes[j]);
     }
 
+    if (dampedStep(z, gradient, hessian, 0, factor, step) < tolerance) return { z, value, evaluations, settled: true };
     for (;;) {
       const predicted = dampedStep(z, gradient, hessian, damping, factor, step);
-      if (predicted < tolerance) return { z, value, evaluations, settled: true };
       for (let j = 0; j < k; j++) trial[j] = withinBounds(z[j] + step[j]);
       const reached = evaluate(trial);
       evaluations++;

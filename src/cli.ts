@@ -1,0 +1,102 @@
+#!/usr/bin/env node
+/** The command line: reads arguments, calls one file of commands/, sets the exit status. */
+import { SingleBar } from 'cli-progress';
+import { Command, CommanderError } from 'commander';
+import { SOFTWARE } from './commands/software.js';
+import { startPlan } from './commands/start.js';
+import { type Reporter, shortPath, writeBriefs } from './commands/write.js';
+import { InputError } from './figures/input-error.js';
+import { ArchiveError } from './record/archive-error.js';
+
+const SOME_FAILED = 1;
+const UNUSABLE = 2;
+
+const out = (text: string): boolean => process.stdout.write(`${text}\n`);
+const err = (text: string): boolean => process.stderr.write(`${text}\n`);
+
+const collect = (name: string, names: readonly string[]): string[] => [...names, name];
+
+const program = new Command('seasonbrief')
+  .description('Forecast briefs in plain language, from a plan and past figures.')
+  .version(SOFTWARE.version)
+  .exitOverride()
+  .showHelpAfterError('(seasonbrief --help shows what there is)');
+
+program
+  .command('start')
+  .description('put a starter plan and figures to edit into a folder')
+  .argument('[folder]', 'where to', '.')
+  .addHelpText('after', '\nExample:\n  seasonbrief start my-briefs')
+  .action(async (folder: string) => {
+    const files = await startPlan(folder);
+    for (const file of files) out(shortPath(file));
+    err(`Edit them, then: seasonbrief write ${shortPath(files.find((file) => file.endsWith('plan.yaml')) ?? '')}`);
+  });
+
+program
+  .command('write')
+  .description('write the briefs, the cover, the records and the ledger')
+  .argument('[plan]', 'the plan', 'plan.yaml')
+  .option('--out <folder>', "the archive's folder (default: out, beside the plan)")
+  .option('--only <name>', 'this series only; may be given several times', collect, [])
+  .option('--trial', 'write to out/trial, marked as a trial; nothing is filed')
+  .option('--no-pdf', 'HTML and records only')
+  .option('--replace', 'replace filed briefs whose inputs have changed; the old files are kept')
+  .option('--quiet', 'say nothing unless something is wrong')
+  .addHelpText('after', '\nExample:\n  seasonbrief write plan.yaml --only "Antifouling paint" --trial')
+  .action(write);
+
+interface WriteArguments {
+  readonly out?: string;
+  readonly only: readonly string[];
+  readonly trial?: boolean;
+  readonly pdf: boolean;
+  readonly replace?: boolean;
+  readonly quiet?: boolean;
+}
+
+async function write(plan: string, { quiet = false, ...options }: WriteArguments): Promise<void> {
+  const { report, end } = reporter(quiet);
+  const result = await writeBriefs(plan, { ...options, report }).finally(end);
+  for (const name of result.unchanged) if (!quiet) err(`${name}: filed already and unchanged; left as it is`);
+  if (!quiet && result.files.length > 0) {
+    err('Open:');
+    for (const file of result.files) out(shortPath(file));
+  }
+  for (const { name, message } of result.failures) err(`series "${name}" failed: ${message}`);
+  if (result.failures.length > 0) process.exitCode = SOME_FAILED;
+}
+
+/** A bar on a terminal, a line a series elsewhere. */
+function reporter(quiet: boolean): { report: Reporter; end: () => void } {
+  const bar =
+    quiet || !process.stderr.isTTY
+      ? null
+      : new SingleBar({ format: '{bar} {value} of {total}  {what}', stream: process.stderr, clearOnComplete: true });
+  let isStarted = false;
+  const progress = (done: number, of: number, what: string): void => {
+    if (quiet) return;
+    if (bar === null) {
+      if (what !== '') err(`${done + 1} of ${of}  ${what}`);
+    } else if (isStarted) bar.update(done, { what });
+    else {
+      bar.start(of, done, { what });
+      isStarted = true;
+    }
+  };
+  const message = (text: string): void => {
+    if (!quiet) err(text);
+  };
+  return { report: { message, progress }, end: () => bar?.stop() };
+}
+
+try {
+  await program.parseAsync();
+} catch (error) {
+  if (error instanceof CommanderError) process.exitCode = error.exitCode === 0 ? 0 : UNUSABLE;
+  else {
+    const isExpected = error instanceof InputError || error instanceof ArchiveError || error instanceof Error;
+    err(isExpected ? error.message : String(error));
+    process.exitCode = UNUSABLE;
+  }
+}
