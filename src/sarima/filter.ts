@@ -101,6 +101,7 @@ export function filterErrors(space: FilterSpace): boolean {
   let diffuseSteps = 0;
   let lastMissing = from > 0 ? -1 - s : -1;
   let steady = false;
+  let settledSteps = 0;
   for (let t = from; t < n; t++) {
     const kind = diffuse.kind[t];
     const uncertain = lastMissing >= t - s;
@@ -163,7 +164,9 @@ export function filterErrors(space: FilterSpace): boolean {
     if (kind === ORDINARY) {
       root[row++] = Math.sqrt(F);
       logSum += Math.log(F);
-      if (!steady && !uncertain && F - 1 < SETTLED) steady = true;
+      // A gap can still weigh on a later season: only r settled steps in a row say that nothing is left of it.
+      settledSteps = !uncertain && F - 1 < SETTLED ? settledSteps + 1 : 0;
+      if (settledSteps > r) steady = true;
       if (steady) continue;
       for (let i = 0; i < used; i++) {
         const scaled = M[i] / F;
@@ -173,6 +176,7 @@ export function filterErrors(space: FilterSpace): boolean {
       updateDiffuse(space, F, diffuseSteps++);
     } else {
       lastMissing = t;
+      settledSteps = 0;
       if (steady) {
         steady = false;
         for (let i = 0; i < r; i++) for (let j = i; j < r; j++) P[i * size + j] = M[i] * M[j];
