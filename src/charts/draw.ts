@@ -58,4 +58,4 @@ async function measureText(): Promise<void> {
 
 /** A function of the compiled chart's text marks: a number in the locale's format, ready made as a label. */
 export const labelled = (values: readonly number[], format: (value: number) => string): string =>
-  values.map((value) => `datum.value === ${value} ? ${JSON.stringify(format(value))}`).join(' : ') + ` : ''`;
+  `${values.map((value) => `datum.value === ${value} ? ${JSON.stringify(format(value))}`).join(' : ')} : ''`;

@@ -99,8 +99,7 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
     scale: { domain: [n - shown - 0.4, n - shown + steps + 0.4], nice: false, zero: false },
     axis: {
       values: years.filter((_, i) => i % yearEvery === 0),
-      labelExpr:
-        years.map((t) => `datum.value === ${t} ? ${JSON.stringify(words.yearName(text(t)))}`).join(' : ') + ` : ''`,
+      labelExpr: `${years.map((t) => `datum.value === ${t} ? ${JSON.stringify(words.yearName(text(t)))}`).join(' : ')} : ''`,
       title: null,
       domain: true,
       labelFlush: false,
