@@ -19,7 +19,9 @@ export interface OutlookWords {
 }
 
 export const WIDTH = 658;
-const HEIGHT = 188;
+const HEIGHT = 176;
+/** The widest that a period's name or number on the rail is. */
+const RAIL_LABEL = 52;
 /** Room at the right for the bands' labels. */
 const LABELS = 74;
 
@@ -112,12 +114,15 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
     axis: { values: ticks, labelExpr: labelled(ticks, (value) => words.number(value, places)), title: null },
   } as const;
   const point = (fields: string) => ({ x, y: { ...y, field: fields } });
-  // With many periods ahead the rail names every second, third … only.
-  const railStep = Math.ceil((ahead.length * 38) / (((WIDTH - LABELS - 60) * ahead.length) / (steps + 1) + 1));
-  const rail = ahead.filter((_, h) => (ahead.length - 1 - h) % railStep === 0);
+  // Neighbours on the rail stand in two rows where one is too narrow; with many periods every second, third … is named.
+  const perStep = (WIDTH - LABELS - 44) / (steps + 0.8);
+  const rows = perStep < RAIL_LABEL ? 2 : 1;
+  const railStep = Math.ceil(RAIL_LABEL / (perStep * rows));
+  const rail = ahead.map((each, h) => ({ ...each, row: Math.floor(h / railStep) % rows, isNamed: h % railStep === 0 }));
+  const railRows = Array.from({ length: rows }, (_, row) => rail.filter((each) => each.row === row && each.isNamed));
 
   const spec = {
-    width: WIDTH - LABELS - 58,
+    width: WIDTH - LABELS - 44,
     height: HEIGHT,
     autosize: { type: 'pad' },
     layer: [
@@ -163,16 +168,18 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
         mark: { type: 'text', align: 'left', dx: 9, dy: label.shift, color: label.color, limit: LABELS - 6 },
         encoding: { x, y, text: { field: 'text' } },
       })),
-      {
-        data: { values: rail },
-        mark: { type: 'text', color: QUIET, fontSize: LABEL - 1.5 },
-        encoding: { x, y: { value: HEIGHT + 34 }, text: { field: 'name' } },
-      },
-      {
-        data: { values: rail },
-        mark: { type: 'text', color: ACCENT, fontWeight: 600 },
-        encoding: { x, y: { value: HEIGHT + 48 }, text: { field: 'label' } },
-      },
+      ...railRows.flatMap((values, row) => [
+        {
+          data: { values },
+          mark: { type: 'text', color: QUIET, fontSize: LABEL - 1.5 },
+          encoding: { x, y: { value: HEIGHT + 32 + 28 * row }, text: { field: 'name' } },
+        },
+        {
+          data: { values },
+          mark: { type: 'text', color: ACCENT, fontWeight: 600 },
+          encoding: { x, y: { value: HEIGHT + 45 + 28 * row }, text: { field: 'label' } },
+        },
+      ]),
     ],
   };
   return draw(spec as unknown as TopLevelSpec, { locale: plan.locale, described: words.described });

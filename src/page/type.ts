@@ -104,7 +104,8 @@ const equationRules = async (html: string): Promise<string[]> => {
   const equations = equationsOf(html);
   if (equations.length === 0) return [];
   const sheet = await equationSheet();
-  const classes = new Set([...equations.join('').matchAll(/class="([^"]*)"/g)].flatMap((match) => match[1].split(' ')));
+  const elements = new Set([...equations.join('').matchAll(/class="([^"]*)"/g)].map((match) => match[1]));
+  const classes = [...elements].map((names) => new Set(names.split(' ')));
   const asked = new Set(
     [...sheet.replace(faceRule, '').matchAll(/([^{}]+)\{([^}]*KaTeX_[^}]*)\}/g)]
       .filter(([, selectors]) => selectors.split(',').some((selector) => isAsked(selector, classes)))
@@ -126,8 +127,13 @@ const equationsOf = (html: string): string[] =>
     throw new Error('The page has an equation whose markup does not end.');
   });
 
-const isAsked = (selector: string, classes: ReadonlySet<string>): boolean =>
-  [...selector.matchAll(/\.([\w-]+)/g)].every(([, name]) => classes.has(name));
+/** Whether for each step of the selector some element has all the classes that it names. */
+const isAsked = (selector: string, elements: readonly ReadonlySet<string>[]): boolean =>
+  selector
+    .trim()
+    .split(/[\s>+~]+/)
+    .map((step) => [...step.matchAll(/\.([\w-]+)/g)].map(([, name]) => name))
+    .every((names) => elements.some((element) => names.every((name) => element.has(name))));
 
 /** Family, slant and weight that a rule of the sheet names, as one text. */
 const faceKey = (rule: string): string => {

@@ -25,13 +25,16 @@ export interface Minimum {
   readonly z: Float64Array;
   readonly value: number;
   readonly evaluations: number;
-  /** False where the search had to be broken off. */
+  /** False where the search had to be broken off while another step still promised something worth having. */
   readonly settled: boolean;
 }
 
 const FORWARD = 1e-6;
 const LONGEST_STEP = 2;
 const MOST_ITERATIONS = 100;
+
+/** A search that rounding brings to a halt has settled where the next step promises less log-likelihood than this. */
+const NEGLIGIBLE = 1e-4;
 
 /** Searches from `start` until less than `tolerance` is to be gained. */
 export function minimize(problem: Problem, start: Float64Array, tolerance: number): Minimum {
@@ -52,6 +55,7 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
   const trial = new Float64Array(k);
   const shifted = new Float64Array(k);
   let damping = 1e-3;
+  let promised = Number.POSITIVE_INFINITY;
 
   for (let iteration = 0; iteration < MOST_ITERATIONS; iteration++) {
     shifted.set(z);
@@ -73,7 +77,8 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
           perSquare * dot(slopes[i], slopes[j]) + dot(penaltySlopes[i], penaltySlopes[j]);
     }
 
-    if (dampedStep(z, gradient, hessian, 0, factor, step) < tolerance) return { z, value, evaluations, settled: true };
+    promised = dampedStep(z, gradient, hessian, 0, factor, step);
+    if (promised < tolerance) return { z, value, evaluations, settled: true };
     for (;;) {
       const predicted = dampedStep(z, gradient, hessian, damping, factor, step);
       for (let j = 0; j < k; j++) trial[j] = withinBounds(z[j] + step[j]);
@@ -89,10 +94,10 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
         break;
       }
       damping = Math.max(damping, 1e-4) * 6;
-      if (damping > 1e9) return { z, value, evaluations, settled: false };
+      if (damping > 1e9) return { z, value, evaluations, settled: promised < NEGLIGIBLE };
     }
   }
-  return { z, value, evaluations, settled: false };
+  return { z, value, evaluations, settled: promised < NEGLIGIBLE };
 }
 
 /**
