@@ -21,7 +21,7 @@ export interface OutlookWords {
 export const WIDTH = 658;
 const HEIGHT = 176;
 /** The widest that a period's name or number on the rail is. */
-const RAIL_LABEL = 52;
+const RAIL_LABEL = 45;
 /** Room at the right for the bands' labels. */
 const LABELS = 74;
 

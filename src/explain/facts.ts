@@ -102,10 +102,10 @@ function seasonOf({ values }: Fit, { season, positions }: Context): Facts['seaso
       else peak.push(next);
     }
   const highestIn = full.map((year) => year.indexOf(Math.max(...year)));
-  // A swing of less than a twentieth of an even share is no season to speak of; under a half it is weak.
+  // A swing of less than a twentieth of an even share is no season to speak of; under a quarter it is weak.
   const swing = (highest - lowest) / even;
   return {
-    strength: swing < 0.05 ? 'none' : swing < 0.5 ? 'weak' : 'strong',
+    strength: swing < 0.05 ? 'none' : swing < 0.25 ? 'weak' : 'strong',
     peak: peak.map((i) => i + 1),
     share: peak.reduce((sum, i) => sum + shares[i], 0),
     trough: shares.indexOf(lowest) + 1,

@@ -32,6 +32,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     title: `${series.name}, ${span} · ${plan.preparedFor}`,
     style: await pageStyle(theme, plan.paper, {
       left: theme.say('running', { series: series.name, brief: record.brief }),
+      foot: theme.say('foot'),
       page: theme.say('page'),
       of: theme.say('of'),
     }),

@@ -19,6 +19,7 @@ export async function renderCover(cover: CoverRecord, theme: Theme, { trial }: {
     title: `${plan.heading} · ${plan.preparedFor}, ${date}`,
     style: await pageStyle(theme, plan.paper, {
       left: theme.say('running', { series: plan.heading, brief: issued }),
+      foot: theme.say('foot'),
       page: theme.say('page'),
       of: theme.say('of'),
     }),

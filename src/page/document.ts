@@ -9,13 +9,14 @@ const TYPE = '/* type */';
 export interface RunningHead {
   /** HTML, as the wording gives it. */
   readonly left: string;
+  readonly foot: string;
   readonly page: string;
   readonly of: string;
 }
 
 export async function pageStyle(theme: Theme, paper: BriefRecord['plan']['paper'], head: RunningHead): Promise<string> {
   const margin = (text: string) => `"${cssText(text)}"`;
-  const page = `@page { size: ${paper}; } @page { @top-left { content: ${margin(head.left)}; } @bottom-right { content: ${margin(`${head.page} `)} counter(page) ${margin(` ${head.of} `)} counter(pages); } }`;
+  const page = `@page { size: ${paper}; } @page { @top-left { content: ${margin(head.left)}; } @bottom-left { content: ${margin(head.foot)}; } @bottom-right { content: ${margin(`${head.page} `)} counter(page) ${margin(` ${head.of} `)} counter(pages); } }`;
   return [TYPE, await equationStyle(), theme.style, page].join('\n');
 }
 
