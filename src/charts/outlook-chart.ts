@@ -19,7 +19,8 @@ export interface OutlookWords {
 }
 
 export const WIDTH = 658;
-const HEIGHT = 176;
+/** The plot's height: less where the table under it is long, so that both fit on the page. */
+const heightFor = (ahead: number): number => Math.max(104, 156 - 13 * Math.max(0, ahead - 4));
 /** The widest that a period's name or number on the rail is. */
 const RAIL_LABEL = 45;
 /** Room at the right for the bands' labels. */
@@ -38,6 +39,7 @@ const shownValues = (values: readonly (number | null)[], count: number): number[
 export async function outlookChart(record: BriefRecord, words: OutlookWords): Promise<string> {
   const { series, figures, outlook, printed, plan } = record;
   const { every, season } = series;
+  const height = heightFor(outlook.periods.length);
   const shown = Math.min(figures.values.length, Math.max(5 * season, 12));
   const first = periodIndex(figures.start, every);
   const n = figures.values.length;
@@ -92,6 +94,7 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
       ...(end.before === null ? [] : [{ y: end.before, text: words.lastYear, color: QUIET }]),
     ],
     ticks,
+    height,
   ).map((label) => ({ ...label, t: end.t }));
 
   const steps = shown + ahead.length - 1;
@@ -123,7 +126,7 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
 
   const spec = {
     width: WIDTH - LABELS - 44,
-    height: HEIGHT,
+    height,
     autosize: { type: 'pad' },
     layer: [
       {
@@ -172,12 +175,12 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
         {
           data: { values },
           mark: { type: 'text', color: QUIET, fontSize: LABEL - 1.5 },
-          encoding: { x, y: { value: HEIGHT + 32 + 28 * row }, text: { field: 'name' } },
+          encoding: { x, y: { value: height + 32 + 28 * row }, text: { field: 'name' } },
         },
         {
           data: { values },
           mark: { type: 'text', color: ACCENT, fontWeight: 600 },
-          encoding: { x, y: { value: HEIGHT + 45 + 28 * row }, text: { field: 'label' } },
+          encoding: { x, y: { value: height + 45 + 28 * row }, text: { field: 'label' } },
         },
       ]),
     ],
@@ -186,8 +189,12 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
 }
 
 /** Labels at the end of the bands, each at least a line below the one above it; `shift` is in px, downwards. */
-function spread(labels: readonly { y: number; text: string; color: string }[], ticks: readonly number[]) {
-  const perPixel = (ticks[ticks.length - 1] - ticks[0]) / HEIGHT || 1;
+function spread(
+  labels: readonly { y: number; text: string; color: string }[],
+  ticks: readonly number[],
+  height: number,
+) {
+  const perPixel = (ticks[ticks.length - 1] - ticks[0]) / height || 1;
   let lowest = Number.NEGATIVE_INFINITY;
   return [...labels]
     .sort((a, b) => b.y - a.y)

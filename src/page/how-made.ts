@@ -27,7 +27,7 @@ export function madeOf(record: BriefRecord, theme: Theme, formats: Formats, equa
     note: theme.say('made.symbols-note', { every, 'every-other': theme.say(`every.${series.every}.other`) }),
     equations: [
       ...titled('backshift', tex.backshift),
-      ...titled('variable', tex.variableDefinition),
+      ...titled(record.figures.events.length > 0 ? 'variable' : 'power', tex.variableDefinition),
       ...titled('expanded', tex.symbols),
       ...titled('numbers', tex.numbers),
       ...(tex.differencedDefinition === null
