@@ -119,8 +119,7 @@ function plainSum(fit: Fit, past: Past, target: WorkedTarget): WorkedSum {
     ...surpriseTerms(expansion, past, 1),
   ];
   const floor = target.expected - exact(terms);
-  // Elsewhere the mean is the exact forecast but for the rounding of a sum of paths.
-  const isHeld = target.heldAtZero && Math.abs(floor) > 1e-9 * Math.max(Math.abs(target.expected), 1e-300);
+  const isHeld = target.heldAtZero && roundTo(floor, target.places + 2) !== 0;
   const all = isHeld ? [...terms, { kind: 'floor' as const, value: null, weight: floor }] : terms;
   const body = printedBody(all, target.expected, target.places, past, target);
   return {

@@ -12,12 +12,14 @@ import subsetFont from 'subset-font';
 import { type Face, faceOf, familyNames, openFaces, type Style, styles } from '../charts/typefaces.js';
 
 /**
- * All @font-face rules of a document: the brief's two families, and the equations' faces where it has equations.
+ * All @font-face rules of a document: the brief's two families (slanted only where it has emphasis, <em> or <i>), and the equations' faces where it has equations.
  * The document's text must stand in it as it is or as numeric references; a named one beyond XML's throws.
  */
 export const typeFor = async (html: string): Promise<string> => {
   const characters = charactersOf(html);
-  const rules = await Promise.all(styles.map((style) => styleRules(style, characters)));
+  const slanted = /<(?:em|i)\b/.test(html);
+  const used = styles.filter(({ italic }) => slanted || !italic);
+  const rules = await Promise.all(used.map((style) => styleRules(style, characters)));
   return [...rules.flat(), ...(await equationRules(html))].join('\n');
 };
 

@@ -55,7 +55,7 @@ describe.each(made)('%s', (_, path) => {
     const { workedSum } = equation;
     const lines = await linesOf(`${path()}.pdf`);
     const from = lines.findIndex((line) => line.startsWith('The sum, worked'));
-    const table = lines.slice(from).filter((line) => !/^(What |Each line|The sum is)/.test(line));
+    const table = lines.slice(from).filter((line) => !/^(What Known|Each line|The sum is)/.test(line));
     const numbers = (line: string) =>
       (line.match(/−?[\d,]+(?:\.\d+)?$/)?.[0] ?? '').replaceAll(',', '').replace('−', '-');
     const columns = table.slice(1, 60).map((line) => ({ line, last: numbers(line) }));

@@ -28,7 +28,7 @@ const holds = (faces: readonly EmbeddedFace[], family: string, character: string
 
 describe('typeFor', () => {
   test('embeds both families, in regular and semibold, and the serif italic', async () => {
-    const faces = facesIn(await typeFor(page('Expect to sell 1,240 litres')));
+    const faces = facesIn(await typeFor(page('Expect to <em>sell</em> 1,240 litres')));
     const styles = faces.map(({ family, style, weight }) => `${family} ${style} ${weight}`).sort();
     expect(styles).toEqual([
       'Brief Sans normal 1 500',

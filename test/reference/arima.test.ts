@@ -1,0 +1,175 @@
+/** Seasonal ARIMA fits and forecasts against R's own arima and predict, called live on R's data sets. */
+import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { fitModel } from '../../src/sarima/fit.js';
+import { parseForm } from '../../src/sarima/form.js';
+import { predict } from '../../src/sarima/predict.js';
+import { openR, type R } from './r.js';
+
+let r: R;
+beforeAll(async () => {
+  r = await openR();
+}, 90_000);
+afterAll(() => r.close());
+
+const SEASONAL = [
+  '(0,1,1)x(0,1,1)',
+  '(1,0,0)x(0,1,1)',
+  '(0,1,2)x(0,1,1)',
+  '(1,1,0)x(0,1,1)',
+  '(0,1,1)x(1,0,0)',
+  '(1,0,1)x(0,1,1)',
+];
+const YEARLY = ['(1,0,0)', '(2,0,0)', '(0,1,1)', '(1,1,0)', '(0,1,2)', '(0,0,2)'];
+
+/** Data set, season, scale, forms, and the positions at which figures are taken out (from 1). */
+const CASES: readonly (readonly [string, number, 'plain' | 'log', readonly string[], readonly number[]])[] = [
+  ['AirPassengers', 12, 'log', SEASONAL, []],
+  ['AirPassengers', 12, 'plain', SEASONAL.slice(0, 2), [30, 31, 77]],
+  ['UKgas', 4, 'log', SEASONAL, []],
+  ['UKgas', 4, 'log', SEASONAL, [12, 50, 51, 90]],
+  ['JohnsonJohnson', 4, 'log', SEASONAL, []],
+  ['JohnsonJohnson', 4, 'plain', SEASONAL, []],
+  ['austres', 4, 'plain', SEASONAL, []],
+  ['presidents', 4, 'plain', SEASONAL, []],
+  ['USAccDeaths', 12, 'plain', SEASONAL, []],
+  ['nottem', 12, 'plain', SEASONAL.slice(0, 3), []],
+  ['LakeHuron', 1, 'plain', YEARLY, []],
+  ['LakeHuron', 1, 'plain', YEARLY.slice(0, 3), [20, 21, 60]],
+  ['lh', 1, 'plain', YEARLY, []],
+];
+
+/** Where R's likelihood can be beaten or R's start covariance is inexact, only the likelihood is compared. */
+const EQUAL = 1e-3;
+const AHEAD = 4;
+let compared = 0;
+
+describe.each(CASES)('%s, season %i, %s', (name, m, scale, forms, gaps) => {
+  test.each(forms)(`%s${gaps.length > 0 ? ' with gaps' : ''}`, async (brackets) => {
+    const text = m === 1 ? brackets : `${brackets}${m}`;
+    const { p, d, q, P, D, Q } = parseForm(text);
+    const constant = d + D === 0;
+    const [loglik, code, ...numbers] = await r.numbers(`{
+      x <- as.numeric(${name}); x[c(${gaps.join(',') || '0'})] <- NA
+      ${scale === 'log' ? 'x <- log(x)' : ''}
+      s <- list(order = c(${P},${D},${Q}), period = ${m})
+      fit <- tryCatch(arima(x, c(${p},${d},${q}), seasonal = s, method = "ML", include.mean = ${constant ? 'TRUE' : 'FALSE'},
+        optim.control = list(reltol = 1e-12, maxit = 500)), error = function(e) NULL)
+      if (is.null(fit)) c(NA, 1) else {
+        f <- predict(fit, ${AHEAD})
+        c(fit$loglik, fit$code, coef(fit), sqrt(diag(fit$var.coef)), f$pred, f$se)
+      } }`);
+    if (Number.isNaN(loglik) || code !== 0) return;
+    const x = await r.numbers(`{ x <- as.numeric(${name}); x[c(${gaps.join(',') || '0'})] <- NA; x }`);
+    const fit = fitModel(x, { form: text, scale, constant });
+    expect(fit.logLikelihood).toBeGreaterThan(loglik - 0.01);
+    if (Math.abs(fit.logLikelihood - loglik) > EQUAL) return;
+    compared++;
+    const k = fit.coefficients.length;
+    const [values, errors] = [numbers.slice(0, k), numbers.slice(k, 2 * k)];
+    const [means, spreads] = [numbers.slice(2 * k, 2 * k + AHEAD), numbers.slice(2 * k + AHEAD)];
+    fit.coefficients.forEach(({ value, name: coefficient }, i) => {
+      if (errors[i] > 0) expect(Math.abs(value - values[i]), coefficient).toBeLessThan(0.02 * errors[i]);
+    });
+    const ours = predict(fit, AHEAD);
+    for (let h = 0; h < AHEAD; h++) {
+      expect(Math.abs(ours.mean[h] - means[h])).toBeLessThan(0.01 * spreads[h]);
+      expect(Math.abs(ours.standardError[h] / spreads[h] - 1)).toBeLessThan(0.005);
+    }
+  });
+});
+
+test('enough of these fits agree with R’s in likelihood for their numbers to have been compared', () => {
+  expect(compared).toBeGreaterThanOrEqual(40);
+});
+
+describe('printed values, to their last printed digit', () => {
+  /** Each: R expression, options, [name, value, standard error], σ², log-likelihood, source. */
+  const PRINTED = [
+    [
+      'AirPassengers',
+      { form: '(0,1,1)x(0,1,1)12', scale: 'log' },
+      [
+        ['theta1', -0.4018, 0.0896],
+        ['Theta1', -0.5569, 0.0731],
+      ],
+      0.001348,
+      244.7,
+      1e-6,
+      'R, arima; Box & Jenkins’ series G',
+    ],
+    [
+      'USAccDeaths',
+      { form: '(0,1,1)x(0,1,1)12' },
+      [
+        ['theta1', -0.4303, 0.1228],
+        ['Theta1', -0.5528, 0.1784],
+      ],
+      99347,
+      -425.44,
+      10,
+      'R’s help page for arima',
+    ],
+    [
+      'presidents',
+      { form: '(3,0,0)', constant: true },
+      [
+        ['phi1', 0.7496, 0.0936],
+        ['phi2', 0.2523, 0.114],
+        ['phi3', -0.189, 0.0946],
+        ['constant', 56.22, 4.28],
+      ],
+      81.12,
+      -414.08,
+      0.02,
+      'R’s help page for arima',
+    ],
+    [
+      'lh',
+      { form: '(3,0,0)', constant: true },
+      [
+        ['phi1', 0.6448, 0.1394],
+        ['phi2', -0.0634, 0.1668],
+        ['phi3', -0.2198, 0.1421],
+        ['constant', 2.3931, 0.0963],
+      ],
+      0.1787,
+      -27.09,
+      1e-4,
+      'R’s help page for arima',
+    ],
+  ] as const;
+
+  test.each(PRINTED)('%s', async (name, options, coefficients, variance, loglik, slack) => {
+    const fit = fitModel(await r.numbers(name), options);
+    for (const [key, value, error] of coefficients) {
+      const found = fit.coefficients.find((coefficient) => coefficient.name === key);
+      // R's search stops a little early, so an estimate may differ by a hundredth of its standard error.
+      expect(Math.abs((found?.value ?? Number.NaN) - value), key).toBeLessThan(Math.max(6e-5, 0.01 * error));
+      expect(Math.abs((found?.standardError ?? Number.NaN) - error), `${key}’s error`).toBeLessThan(
+        Math.max(6e-5, 0.01 * error),
+      );
+    }
+    expect(Math.abs(fit.innovationVariance - variance)).toBeLessThan(slack);
+    expect(Math.abs(fit.logLikelihood - loglik)).toBeLessThan(0.051);
+  });
+
+  test('LakeHuron with year − 1920 as regressor', async () => {
+    const values = await r.numbers('LakeHuron');
+    const year = await r.numbers('time(LakeHuron) - 1920');
+    const fit = fitModel(values, { form: '(2,0,0)', constant: true, regressors: [{ name: 'year', values: year }] });
+    // R's help page for arima.
+    const printed = [
+      ['phi1', 1.0048, 0.0976],
+      ['phi2', -0.2913, 0.1004],
+      ['constant', 579.0993, 0.237],
+      ['year', -0.0216, 0.0081],
+    ] as const;
+    printed.forEach(([name, value, error], i) => {
+      expect(fit.coefficients[i].name).toBe(name);
+      expect(Math.abs(fit.coefficients[i].value - value)).toBeLessThan(Math.max(6e-5, 0.01 * error));
+      expect(Math.abs((fit.coefficients[i].standardError ?? 0) - error)).toBeLessThan(Math.max(6e-5, 0.01 * error));
+    });
+    expect(fit.innovationVariance).toBeCloseTo(0.4566, 3);
+    expect(fit.logLikelihood).toBeCloseTo(-101.2, 1);
+  });
+});
