@@ -19,7 +19,7 @@ import { differencedColumns, type Prepared, prepare } from './prepare.js';
 import { checkRegressors, type Regressor } from './regressors.js';
 import { nearlyCancels, nearUnitRoots } from './roots.js';
 import { parseScale, toScale } from './scale.js';
-import { firstGuess, startValues } from './start.js';
+import { firstGuess, guess, startValues } from './start.js';
 
 export type FittedBy = 'maximum-likelihood' | 'shrunk';
 
@@ -224,14 +224,27 @@ function createEngine(form: Form, prepared: Prepared): Engine {
 const SUSPICIOUS = 2;
 
 function search({ arma, problem }: Engine, prepared: Prepared): Minimum {
-  const start = startValues(arma, prepared.startColumns);
-  let best = minimize(problem, start.z, TOLERANCE);
-  if (best.settled && best.z.every((value) => Math.abs(value) < SUSPICIOUS)) return best;
-  const second = minimize(problem, firstGuess(arma), TOLERANCE);
-  const evaluations = best.evaluations + second.evaluations;
-  if (second.value < best.value || !Number.isFinite(best.value)) best = second;
+  const { form } = arma;
+  let best = minimize(problem, startValues(arma, prepared.startColumns).z, TOLERANCE);
+  const isPlain = best.settled && best.z.every((value) => Math.abs(value) < SUSPICIOUS);
+  const isMixed = form.p > 0 && form.q > 0;
+  // A likelihood with both sides, or with a seasonal autoregression, often has a second summit.
+  const others = [
+    ...(isPlain ? [] : [firstGuess(arma)]),
+    ...(isMixed || form.P > 0 ? [guess(arma, { ar: PERSISTENT, ma: -PERSISTENT / 2 })] : []),
+    ...(isMixed ? [guess(arma, { ar: -PERSISTENT / 3, ma: PERSISTENT / 3 })] : []),
+  ];
+  let { evaluations } = best;
+  for (const start of others) {
+    const found = minimize(problem, start, TOLERANCE);
+    evaluations += found.evaluations;
+    if (found.value < best.value || !Number.isFinite(best.value)) best = found;
+  }
   return { ...best, evaluations };
 }
+
+/** A first partial autocorrelation of 0.9. */
+const PERSISTENT = 1.5;
 
 function report(asked: Asked, prepared: Prepared, engine: Engine, found: Minimum): Fit {
   const { form } = asked;

@@ -51,9 +51,12 @@ export function startValues(arma: Arma, data: readonly Float64Array[]): { z: Flo
 const FARTHEST = 2;
 
 /** The guess that is free of the data: slightly negative moving averages, slightly positive autoregressions. */
-export function firstGuess(arma: Arma): Float64Array {
+export const firstGuess = (arma: Arma): Float64Array => guess(arma, { ar: FIRST, ma: -FIRST });
+
+/** z with the first of each autoregressive block at `ar`, of each moving-average block at `ma`, all others 0. */
+export function guess(arma: Arma, first: { readonly ar: number; readonly ma: number }): Float64Array {
   const z = new Float64Array(arma.coefficients.length);
-  for (const { from, order, sign } of arma.blocks) if (order > 0) z[from] = sign * FIRST;
+  for (const { from, order, sign } of arma.blocks) if (order > 0) z[from] = sign > 0 ? first.ar : first.ma;
   return z;
 }
 
