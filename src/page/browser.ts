@@ -76,15 +76,18 @@ const launch = async (program: Program, warn: (text: string) => void): Promise<B
         ...extra,
       ],
     });
-  const startWithout = (why: string): Promise<Browser> => {
+  const startWithout = async (why: string): Promise<Browser> => {
+    const browser = await start(['--no-sandbox']);
     warn(`The browser that prints runs without its sandbox: ${why}. It opens nothing but the brief itself.`);
-    return start(['--no-sandbox']);
+    return browser;
   };
   if (process.getuid?.() === 0) return startWithout('a browser started as root can have none');
-  return await start([]).catch((error: unknown) => {
-    if (/sandbox|namespace/i.test(String(error))) return startWithout('this system does not let it have one');
-    throw error;
-  });
+  // A browser that is denied its sandbox ends without a word over the pipe: only the second try tells.
+  return await start([]).catch((error: unknown) =>
+    startWithout('this system does not let it have one').catch(() => {
+      throw error;
+    }),
+  );
 };
 
 // The bundled browser -------------------------------------------------------------------------------------------
