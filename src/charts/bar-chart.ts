@@ -9,7 +9,6 @@ export interface BarWords {
   /** What is counted along the axis. */
   readonly axis: string;
   readonly number: (value: number, places: number) => string;
-  readonly locale: string;
 }
 
 export interface Bars {

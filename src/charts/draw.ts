@@ -4,9 +4,7 @@ import { compile, type TopLevelSpec } from 'vega-lite';
 import { config, properties } from './look.js';
 import { openTextWidth } from './metrics.js';
 
-/** The locale's number format for axes. */
 export interface ChartLook {
-  readonly locale: string;
   /** What the chart shows, for whoever can't see it. */
   readonly described: string;
 }

@@ -185,7 +185,7 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
       ]),
     ],
   };
-  return draw(spec as unknown as TopLevelSpec, { locale: plan.locale, described: words.described });
+  return draw(spec as unknown as TopLevelSpec, { described: words.described });
 }
 
 /** Labels at the end of the bands, each at least a line below the one above it; `shift` is in px, downwards. */

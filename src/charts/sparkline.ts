@@ -4,7 +4,7 @@ import type { CoverRecord } from '../record/cover.js';
 import { draw } from './draw.js';
 import { ACCENT, INK } from './look.js';
 
-export function sparkline(row: CoverRecord['rows'][number], described: string, locale: string): Promise<string> {
+export function sparkline(row: CoverRecord['rows'][number], described: string): Promise<string> {
   const past = row.history.map((y, t) => ({ t, y }));
   const ahead = row.outlook.map((y, h) => ({ t: row.history.length + h, y }));
   const joined = [...past.slice(-1), ...ahead];
@@ -20,5 +20,5 @@ export function sparkline(row: CoverRecord['rows'][number], described: string, l
       { data: { values: joined }, mark: { type: 'line', color: ACCENT, strokeWidth: 1.6 }, encoding },
     ],
   };
-  return draw(spec as unknown as TopLevelSpec, { described, locale });
+  return draw(spec as unknown as TopLevelSpec, { described });
 }

@@ -133,7 +133,7 @@ function figuresTable({ series, outlook, printed }: BriefRecord, theme: Theme, f
   };
 }
 
-async function weightsOf({ series, equation, plan }: BriefRecord, theme: Theme, formats: Formats) {
+async function weightsOf({ series, equation }: BriefRecord, theme: Theme, formats: Formats) {
   const many = theme.say(`every.${series.every}.other`);
   const largest = equation.weights.reduce((a, b) => (Math.abs(b.weight) > Math.abs(a.weight) ? b : a));
   return {
@@ -148,13 +148,12 @@ async function weightsOf({ series, equation, plan }: BriefRecord, theme: Theme, 
         }),
         axis: theme.say('weights.axis', { every: many }),
         number: formats.number,
-        locale: plan.locale,
       },
     ),
   };
 }
 
-async function echoOf({ series, equation, plan }: BriefRecord, theme: Theme, formats: Formats) {
+async function echoOf({ series, equation }: BriefRecord, theme: Theme, formats: Formats) {
   const many = theme.say(`every.${series.every}.other`);
   const last = equation.echo[equation.echo.length - 1];
   return {
@@ -170,16 +169,15 @@ async function echoOf({ series, equation, plan }: BriefRecord, theme: Theme, for
         }),
         axis: theme.say('echo.axis', { every: many }),
         number: formats.number,
-        locale: plan.locale,
       },
     ),
   };
 }
 
 async function checksCharts(record: BriefRecord, theme: Theme, formats: Formats) {
-  const { series, fit, plan } = record;
+  const { series, fit } = record;
   const known = fit.standardizedResiduals.filter((value) => value !== null);
-  const words = { number: formats.number, locale: plan.locale };
+  const words = { number: formats.number };
   return {
     residuals: {
       title: theme.say('checks.residuals.title', { every: theme.say(`every.${series.every}.one`) }),

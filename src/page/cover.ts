@@ -39,11 +39,7 @@ export async function renderCover(cover: CoverRecord, theme: Theme, { trial }: {
           href: `${series.slug}.html`,
           name: series.name,
           scope: theme.say('cover.next', { unit: series.unit, span: formats.span(row.span[0], row.span[1]) }),
-          svg: await sparkline(
-            row,
-            plainText(theme.say('cover.line-described', { series: series.name, years })),
-            plan.locale,
-          ),
+          svg: await sparkline(row, plainText(theme.say('cover.line-described', { series: series.name, years }))),
           expected: formats.number(answer.expected, answer.places),
           range: theme.say('figures.and', {
             low: formats.number(answer.range80[0], answer.places),
