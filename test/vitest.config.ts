@@ -6,7 +6,7 @@ export default defineConfig({
   test: {
     include: ['test/**/*.test.ts'],
     exclude: ['test/proof/**'],
-    testTimeout: 30_000,
-    hookTimeout: 90_000,
+    testTimeout: 120_000,
+    hookTimeout: 180_000,
   },
 });
