@@ -9,7 +9,7 @@ import { openR, type R } from './r.js';
 let r: R;
 beforeAll(async () => {
   r = await openR();
-}, 90_000);
+}, 180_000);
 afterAll(() => r.close());
 
 const SEASONAL = [
