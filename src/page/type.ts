@@ -23,11 +23,13 @@ export const typeFor = async (html: string): Promise<string> => {
   return [...rules.flat(), ...(await equationRules(html))].join('\n');
 };
 
-/** The characters of a document that no face holds, which are left to whatever fonts the reader's machine has. */
+/** The characters of a document that some style lacks, which are left to whatever fonts the machine has. */
 export const uncovered = async (html: string): Promise<string[]> => {
-  const faces = await openFaces(styles[0]);
   const drawn = charactersOf(html).filter((character) => !/[\p{C}\p{Z}\p{M}]/u.test(character));
-  return drawn.filter((character) => !standIns.has(character) && faceOf(character, faces) === undefined);
+  const each = await Promise.all(styles.map(openFaces));
+  return drawn.filter((character) =>
+    each.some((faces) => faceOf(standIns.get(character) ?? character, faces) === undefined),
+  );
 };
 
 /** The style sheet of the equations, without its faces, which `typeFor` embeds. */
