@@ -205,7 +205,10 @@ const unpackInto = async (folder: string): Promise<void> => {
   });
 };
 
-/** Without a usable configuration the browser can't even use fonts that a page brings along. */
+/**
+ * Without a usable configuration the browser can't even use fonts that a page brings along. The machine's own fonts
+ * stay out: with them the same brief would be other bytes on another machine.
+ */
 const fontsConfiguration = (folder: string): string => `<?xml version="1.0"?>
 <!DOCTYPE fontconfig SYSTEM "fonts.dtd">
 <fontconfig>

@@ -5,6 +5,7 @@
  */
 import type { Browser, HTTPRequest, Page } from 'puppeteer';
 import { type BrowserRequest, openBrowser } from './browser.js';
+import { uncovered } from './type.js';
 
 export interface Printer {
   /**
@@ -23,6 +24,7 @@ export const openPrinter = async (request: BrowserRequest): Promise<Printer> => 
 
   const printNext = async (html: string, issued: string): Promise<Uint8Array> => {
     try {
+      await warnOfUncovered(html, request.warn);
       browser ??= await openBrowser(request);
       page ??= await openPage(browser);
       return sameBytes(await within(timeout, printPage(page, html)), issued);
@@ -47,6 +49,15 @@ export const openPrinter = async (request: BrowserRequest): Promise<Printer> => 
       await browser?.close();
     },
   };
+};
+
+const warnOfUncovered = async (html: string, warn: (text: string) => void): Promise<void> => {
+  const characters = await uncovered(html);
+  if (characters.length === 0) return;
+  const title = html.match(/<title>([^<]*)/)?.[1] ?? 'page';
+  warn(
+    `"${title}": the brief's typefaces lack ${characters.join(' ')}, which print in another font or as empty boxes.`,
+  );
 };
 
 const timeout = 60_000;

@@ -23,9 +23,11 @@ export const typeFor = async (html: string): Promise<string> => {
   return [...rules.flat(), ...(await equationRules(html))].join('\n');
 };
 
-/** The characters of a document that some style lacks, which are left to whatever fonts the machine has. */
+/** The characters of a document's text that some style lacks, which are left to whatever fonts the machine has. */
 export const uncovered = async (html: string): Promise<string[]> => {
-  const drawn = charactersOf(html).filter((character) => !/[\p{C}\p{Z}\p{M}]/u.test(character));
+  const text = equationsOf(html).reduce((rest, equation) => rest.replace(equation, ''), html);
+  // Lowered digits are in the one font that the bundled browser brings along, and in any system's.
+  const drawn = charactersOf(text).filter((character) => !/[\p{C}\p{Z}\p{M}₀-₉]/u.test(character));
   const each = await Promise.all(styles.map(openFaces));
   return drawn.filter((character) =>
     each.some((faces) => faceOf(standIns.get(character) ?? character, faces) === undefined),

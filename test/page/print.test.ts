@@ -5,8 +5,9 @@ import { openPrinter, type Printer, sameBytes } from '../../src/page/print.js';
 import { typeFor } from '../../src/page/type.js';
 
 let printer: Printer;
+const warnings: string[] = [];
 beforeAll(async () => {
-  printer = await openPrinter({ warn: () => undefined });
+  printer = await openPrinter({ warn: (text) => warnings.push(text) });
 });
 afterAll(() => printer.close());
 
@@ -66,6 +67,15 @@ describe('a printed page', () => {
     // US Letter is 8.5 by 11 inches of 72 points.
     expect((await (await openPdf(pdf)).getPage(1)).view).toEqual([0, 0, 612, 792]);
   });
+});
+
+test('what the typefaces lack is printed with a warning that names it', async () => {
+  warnings.length = 0;
+  await printer.print(await page('<p>Covered: é φ → ≥'), issued);
+  expect(warnings).toEqual([]);
+  await printer.print(await page('<p>Paint 日本'), issued);
+  expect(warnings).toHaveLength(1);
+  expect(warnings[0]).toMatch(/"Stores – outlook": .* lack 日 本,/);
 });
 
 describe('a page that would print wrongly is refused', () => {
