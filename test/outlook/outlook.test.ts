@@ -64,18 +64,54 @@ describe('the matrix of paths', () => {
     expect(Math.abs(total.range95[0] - (centre - normalQuantile(0.975) * spread))).toBeLessThan(0.02 * spread);
   });
 
-  test.each(['plain', 'log'])(
-    'from seed to seed the ends of the total’s range move by a fiftieth of its width on the %s scale',
-    (scale) => {
+  test.each([
+    ['plain', 4],
+    ['log', 4],
+    ['plain', 12],
+    ['log', 12],
+  ] as const)(
+    'from seed to seed the ends of every total’s range move by less than a fiftieth of its width: %s scale, %i ahead',
+    (scale, ahead) => {
       const once = fitted(scale);
-      const ends = Array.from({ length: 20 }, (_, seed) => makeOutlook(once, { ...options, seed }).totals[0].range80);
-      const width = ends[0][1] - ends[0][0];
-      for (const side of [0, 1]) {
-        const values = ends.map((range) => range[side]);
-        expect(Math.max(...values) - Math.min(...values)).toBeLessThan(0.02 * width);
-      }
+      const all = Array.from({ length: ahead }, (_, h) => h);
+      const spans = [all, all.slice(0, 3), all.slice(ahead / 2)].map((steps) => ({
+        kind: 'ahead' as const,
+        year: null,
+        known: 0,
+        steps,
+      }));
+      const made = Array.from({ length: 20 }, (_, seed) => makeOutlook(once, { ...options, ahead, seed, spans }));
+      spans.forEach((_, i) => {
+        const ranges = made.map(({ totals }) => totals[i].range80);
+        const width = ranges[0][1] - ranges[0][0];
+        for (const side of [0, 1]) {
+          const ends = ranges.map((range) => range[side]);
+          expect(Math.max(...ends) - Math.min(...ends)).toBeLessThan(0.02 * width);
+        }
+      });
     },
   );
+
+  test('the paths have the joint covariance that the filter gives', () => {
+    const plain = fitted('plain');
+    const { mean, covariance } = predict(plain, 4);
+    const { matrix, paths } = makeOutlook(plain, { ...options, holdAtZero: false });
+    for (let i = 0; i < 4; i++)
+      for (let j = 0; j <= i; j++) {
+        let sum = 0;
+        for (let k = 0; k < paths; k++) sum += (matrix[i * paths + k] - mean[i]) * (matrix[j * paths + k] - mean[j]);
+        const scale = Math.sqrt(covariance[i * 5] * covariance[j * 5]);
+        expect(Math.abs(sum / paths - covariance[i * 4 + j])).toBeLessThan(0.01 * scale);
+      }
+  });
+
+  test('beyond its end a power scale gives zero, or, where it has no upper end, an error', () => {
+    const small = figures.map((value) => Math.max(value - 240, 1));
+    const { matrix } = makeOutlook(fitModel(small, { form: '(0,1,1)x(0,1,1)4', scale: 'box-cox 0.5' }), options);
+    expect(matrix.every((value) => value >= 0 && Number.isFinite(value))).toBe(true);
+    const inverse = fitModel(small, { form: '(0,1,1)x(0,1,1)4', scale: 'box-cox -1' });
+    expect(() => makeOutlook(inverse, options)).toThrow(/box-cox -1: .* no upper end; use scale plain/);
+  });
 
   test('held at zero, no path is below it and the mean rises above the centre’s', () => {
     const low = fitModel(
