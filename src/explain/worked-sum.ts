@@ -6,7 +6,7 @@
  * printed weight times the printed value, with two digits more than the result; a last line takes up the rounding.
  */
 import type { Fit } from '../sarima/fit.js';
-import { parseScale } from '../sarima/scale.js';
+import { parseScale, type Scale } from '../sarima/scale.js';
 import { smooth } from '../sarima/smooth.js';
 import { decimal, leadingDigits, minus, placesOf, rounded, roundTo, sum, times, toNumber } from './decimals.js';
 import { type Expansion, expand, expandDifferenced, type LagTerm, undoDifferences } from './expand.js';
@@ -59,17 +59,41 @@ export function workedSum(fit: Fit, target: WorkedTarget): WorkedSum {
   const past = pastOf(fit);
   const scale = parseScale(fit.scale);
   if (scale.kind === 'plain') return plainSum(fit, past, target);
-  const body = differencedSum(fit, past, target, scale.kind === 'log' ? 100 : 1);
-  const back = scale.kind === 'log' ? backFromLog(fit, past, target, body) : backFromPower(fit, past, target, body);
-  return {
-    period: target.periods[past.n],
-    variable: 'difference',
-    unit: scale.kind === 'log' ? 'log-hundredths' : 'transformed',
-    ...body,
-    back,
-    expected: roundTo(target.expected, target.places),
-  };
+  const middle = roundTo(target.middle, target.places);
+  const most = mostPlaces(scale, target);
+  const fewest = Math.min(fewestPlaces(scale, target), most);
+  for (let places = fewest; ; places++) {
+    const body = differencedSum(fit, past, target, places);
+    const back = scale.kind === 'log' ? backFromLog(fit, past, target, body) : backFromPower(fit, past, target, body);
+    // A middle close to a half can need a digit more to come out on its own side of it.
+    const isReached = back.some(({ kind, value }) => kind === 'middle' && value === middle);
+    if (isReached || places === Math.min(fewest + MOST_EXTRA, most))
+      return {
+        period: target.periods[past.n],
+        variable: 'difference',
+        unit: scale.kind === 'log' ? 'log-hundredths' : 'transformed',
+        ...body,
+        back,
+        expected: roundTo(target.expected, target.places),
+      };
+  }
 }
+
+/** Places of the sum with which the middle is right to within a twentieth of its last digit. */
+function fewestPlaces({ kind, lambda }: Scale, { middle, places }: WorkedTarget): number {
+  if (kind === 'log') return Math.max(2, leadingDigits(middle) + places - 1);
+  // A step dy of the figures is y^(λ−1) dy of the scale.
+  const size = Math.max(middle, 10 ** -places);
+  return Math.max(2, Math.ceil(places + 1 + (1 - lambda) * Math.log10(size)));
+}
+
+/** Places of the sum with which a double still holds the products, two places finer: 15 digits in all. */
+function mostPlaces({ kind, to }: Scale, { middle }: WorkedTarget): number {
+  const transformed = middle > 0 ? to(middle) : 0;
+  return 13 - leadingDigits(kind === 'log' ? 100 * transformed : transformed);
+}
+
+const MOST_EXTRA = 4;
 
 /** What the sum draws on, by how many periods before the forecast: lag 1 is the last figure. */
 interface Past {
@@ -132,8 +156,9 @@ function plainSum(fit: Fit, past: Past, target: WorkedTarget): WorkedSum {
   };
 }
 
-/** The sum in z, `per` to one unit of the model's scale. */
-function differencedSum(fit: Fit, past: Past, target: WorkedTarget, per: number): Body {
+/** The sum in z to so many places, on the log scale in hundredths. */
+function differencedSum(fit: Fit, past: Past, target: WorkedTarget, places: number): Body {
+  const per = parseScale(fit.scale).kind === 'log' ? 100 : 1;
   const expansion = expandDifferenced(fit);
   const terms = [
     ...expansion.lags.map((term) => {
@@ -143,10 +168,7 @@ function differencedSum(fit: Fit, past: Past, target: WorkedTarget, per: number)
     ...(fit.constant ? [{ kind: 'constant' as const, value: per * fit.constantValue, weight: atOne(fit) }] : []),
     ...surpriseTerms(expansion, past, per),
   ];
-  const total = exact(terms);
-  const digits = leadingDigits(target.expected) + target.places;
-  const places = per === 100 ? Math.max(3, digits) : Math.max(4, digits);
-  return printedBody(terms, total, places, past, target);
+  return printedBody(terms, exact(terms), places, past, target);
 }
 
 /** z so many periods before the forecast: the figures' differences, effects taken off. */
@@ -237,7 +259,7 @@ function printedTerm(term: RawTerm, productPlaces: number, past: Past, { periods
     return { ...base, value: null, weight: null, decimals: { value: 0, weight: 0 }, product };
   }
   const value = decimal(term.value, term.valuePlaces ?? productPlaces);
-  const weightPlaces = Math.min(placesOf(term.weight, 15), weightPlacesFor(term.value));
+  const weightPlaces = Math.min(placesOf(term.weight, 15), weightPlacesFor(term.value, productPlaces));
   const weight = decimal(term.weight, weightPlaces);
   return {
     ...base,
@@ -248,8 +270,9 @@ function printedTerm(term: RawTerm, productPlaces: number, past: Past, { periods
   };
 }
 
-/** Four places of a weight, more where it stands on a number of five digits and more. */
-const weightPlacesFor = (value: number): number => Math.max(4, leadingDigits(value));
+/** Four places of a weight, more where its product's last digit but one would not be right. */
+const weightPlacesFor = (value: number, productPlaces: number): number =>
+  Math.max(4, leadingDigits(value) + productPlaces - 1);
 
 const backLine = (kind: BackLine['kind'], value: number, decimals: number, rest: Partial<BackLine> = {}): BackLine => ({
   kind,
@@ -263,23 +286,27 @@ const backLine = (kind: BackLine['kind'], value: number, decimals: number, rest:
 });
 
 /** Base figures times effects times e^(sum/100) is the middle; the last line leads on to the expected value. */
-function backFromLog(fit: Fit, past: Past, target: WorkedTarget, { total }: Body): BackLine[] {
+function backFromLog(
+  fit: Fit,
+  past: Past,
+  target: WorkedTarget,
+  { total, decimals: { total: places } }: Body,
+): BackLine[] {
+  // A factor is as fine as the sum: a hundredth of a log is about 0.01.
+  const factorPlaces = places + 2;
   const bases = undoDifferences(fit.form).map(({ lag, weight }) => {
     const smoothed = past.isMissing(lag);
     const value = smoothed ? Math.exp(past.scaled(lag)) : fit.values[past.n - lag];
-    const decimals = smoothed ? target.places + 2 : placesOf(value, 10);
+    const decimals = smoothed ? target.places + 3 : placesOf(value, 10);
     return backLine('base', value, decimals, { power: weight, smoothed, period: periodAt(past, target, lag) });
   });
   const effects = netEffects(fit, past).map(({ coefficient, net }) =>
-    backLine('effect', Math.exp(net), factorPlaces(target), { power: 1, coefficient }),
+    backLine('effect', Math.exp(net), factorPlaces, { power: 1, coefficient }),
   );
   const multiplied = [...bases, ...effects].reduce((product, { value, power }) => product * value ** (power ?? 1), 1);
-  const growth = backLine('growth', Math.exp(total / 100), factorPlaces(target), { power: 1 });
+  const growth = backLine('growth', Math.exp(total / 100), factorPlaces, { power: 1 });
   return [...bases, ...effects, growth, ...toExpected(multiplied * growth.value, target)];
 }
-
-/** Places of a factor: enough for the last digit of what it multiplies. */
-const factorPlaces = ({ expected, places }: WorkedTarget): number => Math.max(6, leadingDigits(expected) + places + 2);
 
 /** Transformed base figures plus effects plus the sum is `transformed`; undoing the power gives the middle. */
 function backFromPower(fit: Fit, past: Past, target: WorkedTarget, { total, decimals }: Body): BackLine[] {
