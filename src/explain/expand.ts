@@ -108,11 +108,11 @@ function collected(terms: Polynomial): Polynomial {
   return [...sums.values()].filter((term) => term.times !== 0);
 }
 
-/** Lags 1, 2, …: one term a lag, shorter products first. */
+/** Lags 1, 2, …: one term a lag, shorter products first, those without a seasonal coefficient before the others. */
 function pastTerms(terms: Polynomial, value: (name: string) => number): LagTerm[] {
   const lags = [...new Set(terms.map((term) => term.lag))].filter((lag) => lag > 0).sort((a, b) => a - b);
   return lags.map((lag) => {
-    const here = terms.filter((term) => term.lag === lag).sort((a, b) => a.names.length - b.names.length);
+    const here = terms.filter((term) => term.lag === lag).sort(inReadingOrder);
     return {
       lag,
       weight: here.reduce((sum, term) => sum + term.names.reduce((product, n) => product * value(n), term.times), 0),
@@ -120,6 +120,11 @@ function pastTerms(terms: Polynomial, value: (name: string) => number): LagTerm[
     };
   });
 }
+
+const inReadingOrder = (a: Product, b: Product): number =>
+  a.names.length - b.names.length || Number(isSeasonal(a)) - Number(isSeasonal(b));
+
+const isSeasonal = ({ names }: Product): boolean => names.some((name) => /^[PT]/.test(name));
 
 const negated = (terms: readonly LagTerm[]): LagTerm[] =>
   terms.map(({ lag, weight, products }) => ({

@@ -8,23 +8,39 @@ const COLUMN = 26;
  * but the first begins with its sign.
  */
 export function equationTex(left: string, parts: readonly string[]): string {
-  const indent = breadth(`${left} = `);
+  const room = COLUMN - breadth(`${left} = `);
+  // A weight in brackets that is wider than a line is broken inside the brackets.
+  const pieces = parts.flatMap((part) => (breadth(part) > room ? part.split(/ (?=[+-] )/) : [part]));
+  const lines = packed(pieces, ' ', room);
+  return lines.length === 1
+    ? `${left} = ${lines[0]}`
+    : `\\begin{aligned} ${left} ={}& ${lines.join(' \\\\ &{}')} \\end{aligned}`;
+}
+
+/** `left = right`, both products of brackets: on one line where it fits, else with `right` on lines of its own. */
+export function productsTex(left: string, right: string): string {
+  if (fits(`${left} = ${right}`)) return `${left} = ${right}`;
+  const pieces = (tex: string) => tex.split(/(?<=\))(?=\(|\\)|(?= [+-] )/);
+  const room = COLUMN - breadth('= ');
+  const lines = [...packed(pieces(left), '', room), ...packed(pieces(`= ${right}`), '', room)];
+  return `\\begin{aligned} &${lines.join(' \\\\ &\\quad ')} \\end{aligned}`;
+}
+
+/** Pieces joined into lines of at most `room`, but at least one piece a line. */
+function packed(pieces: readonly string[], join: string, room: number): string[] {
   const lines: string[] = [];
-  let [line, width] = ['', indent];
-  for (const part of parts) {
-    const next = breadth(part);
-    if (line !== '' && width + next > COLUMN) {
-      lines.push(line);
-      [line, width] = [part, indent + next];
+  let width = Infinity;
+  for (const piece of pieces) {
+    const next = breadth(piece);
+    if (width + next > room) {
+      lines.push(piece.trimStart());
+      width = next;
     } else {
-      line = line === '' ? part : `${line} ${part}`;
+      lines.push(`${lines.pop() ?? ''}${join}${piece}`);
       width += next;
     }
   }
-  lines.push(line);
-  return lines.length === 1
-    ? `${left} = ${line}`
-    : `\\begin{aligned} ${left} ={}& ${lines.join(' \\\\ &{}')} \\end{aligned}`;
+  return lines;
 }
 
 /** Several equations, one a line, aligned at the first `=` of each. */
@@ -34,7 +50,7 @@ export function stackedTex(equations: readonly string[]): string {
 }
 
 /** Whether TeX fits on one line. */
-export const fits = (tex: string): boolean => breadth(tex) <= COLUMN;
+const fits = (tex: string): boolean => breadth(tex) <= COLUMN;
 
 /** About how wide TeX is set, in em: from the widths of Computer Modern's characters. */
 export function breadth(tex: string): number {

@@ -9,7 +9,7 @@ import {
   undoDifferences,
   weightTex,
 } from './expand.js';
-import { equationTex, fits, stackedTex } from './lines.js';
+import { equationTex, productsTex, stackedTex } from './lines.js';
 import { coefficientTex, subscript } from './symbols.js';
 
 /** What is typeset: the model, its scale (`plain`, `log`, `box-cox 0.3`) and how many regressors it has. */
@@ -89,7 +89,7 @@ function backshiftTex({ form, constant }: Typesettable, y: Variable): string {
   const differenced = nablas === '' ? y(0) : `${nablas} ${y(0)}`;
   const centred = constant ? `${differenced} - c` : differenced;
   const left = constant && autoregressive !== '' ? `${autoregressive}(${centred})` : `${autoregressive}${centred}`;
-  return splitAtEquals(left, `${movingAverage}\\varepsilon_t`);
+  return productsTex(left, `${movingAverage}\\varepsilon_t`);
 }
 
 /** 1 − φ₁B − φ₂B² in brackets, with spacing 0 its value at B = 1; nothing where the order is 0. */
@@ -165,11 +165,4 @@ function expandedTex(model: Typesettable, { lags, surprises }: Expansion, y: Var
     ...surprises.map((term) => writing.term(term, `\\varepsilon${at(term.lag)}`)),
   ];
   return equationTex(y(0), [parts[0].replace(/^\+ /, ''), ...parts.slice(1)]);
-}
-
-/** A backshift form too long for a line has its right-hand side on the next. */
-function splitAtEquals(left: string, right: string): string {
-  return fits(`${left} = ${right}`)
-    ? `${left} = ${right}`
-    : `\\begin{aligned} &${left} \\\\ &\\quad = ${right} \\end{aligned}`;
 }
