@@ -1,12 +1,12 @@
 #!/usr/bin/env node
 /** The command line: reads arguments, calls one file of commands/, sets the exit status. */
+import { constants } from 'node:os';
 import { SingleBar } from 'cli-progress';
 import { Command, CommanderError } from 'commander';
 import { SOFTWARE } from './commands/software.js';
 import { startPlan } from './commands/start.js';
-import { type Reporter, shortPath, writeBriefs } from './commands/write.js';
-import { InputError } from './figures/input-error.js';
-import { ArchiveError } from './record/archive-error.js';
+import type { Reporter } from './commands/work.js';
+import { shortPath, writeBriefs } from './commands/write.js';
 
 const SOME_FAILED = 1;
 const UNUSABLE = 2;
@@ -46,6 +46,18 @@ program
   .addHelpText('after', '\nExample:\n  seasonbrief write plan.yaml --only "Antifouling paint" --trial')
   .action(write);
 
+/** The user or the system asked the program to end. */
+class Interrupted extends Error {
+  override readonly name = 'Interrupted';
+  readonly status: number;
+
+  constructor(signal: 'SIGINT' | 'SIGTERM') {
+    super(`stopped by ${signal}: nothing was filed, and everything is as it was`);
+    // As shells have it: 128 and the signal's number.
+    this.status = 128 + constants.signals[signal];
+  }
+}
+
 interface WriteArguments {
   readonly out?: string;
   readonly only: readonly string[];
@@ -57,14 +69,18 @@ interface WriteArguments {
 
 async function write(plan: string, { quiet = false, ...options }: WriteArguments): Promise<void> {
   const { report, end } = reporter(quiet);
-  const result = await writeBriefs(plan, { ...options, report }).finally(end);
+  const stop = new AbortController();
+  for (const signal of ['SIGINT', 'SIGTERM'] as const) process.once(signal, () => stop.abort(new Interrupted(signal)));
+  const result = await writeBriefs(plan, { ...options, report, signal: stop.signal }).finally(end);
   for (const name of result.unchanged) if (!quiet) err(`${name}: filed already and unchanged; left as it is`);
   if (!quiet && result.files.length > 0) {
     err('Open:');
     for (const file of result.files) out(shortPath(file));
   }
-  for (const { name, message } of result.failures) err(`series "${name}" failed: ${message}`);
-  if (result.failures.length > 0) process.exitCode = SOME_FAILED;
+  const { failures, written } = result;
+  if (failures.length > 0) err(`${failures.length} of ${failures.length + written.length} failed:`);
+  for (const { name, message } of failures) err(`series "${name}" failed: ${message}`);
+  if (failures.length > 0) process.exitCode = SOME_FAILED;
 }
 
 /** A bar on a terminal, a line a series elsewhere. */
@@ -95,8 +111,7 @@ try {
 } catch (error) {
   if (error instanceof CommanderError) process.exitCode = error.exitCode === 0 ? 0 : UNUSABLE;
   else {
-    const isExpected = error instanceof InputError || error instanceof ArchiveError || error instanceof Error;
-    err(isExpected ? error.message : String(error));
-    process.exitCode = UNUSABLE;
+    err(error instanceof Error ? error.message : String(error));
+    process.exitCode = error instanceof Interrupted ? error.status : UNUSABLE;
   }
 }

@@ -1,5 +1,6 @@
 /** The library: what a program can do with seasonal ARIMA models and briefs. */
-export { type WriteOptions, type WriteResult, writeBriefs } from './commands/write.js';
+export type { Reporter, WriteOptions } from './commands/work.js';
+export { type WriteResult, writeBriefs } from './commands/write.js';
 export { type ForecastPeriod, forecast } from './outlook/outlook.js';
 export { type Coefficient, type Fit, type FitOptions, fitModel } from './sarima/fit.js';
 export { type Form, formText, parseForm } from './sarima/form.js';

@@ -65,6 +65,10 @@ const launch = async (program: Program, warn: (text: string) => void): Promise<B
       headless: 'shell',
       // Over a pipe the browser opens no port, and ends when this process does, however that ends.
       pipe: true,
+      // Ctrl-C is for the program to answer, which must clear up first.
+      handleSIGINT: false,
+      handleSIGTERM: false,
+      handleSIGHUP: false,
       timeout: launchTimeout,
       env: { ...process.env, ...program.env },
       args: [

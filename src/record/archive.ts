@@ -9,7 +9,7 @@ import { ArchiveError, archiveError, errorCode } from './archive-error.js';
 import { sha256 } from './canonical.js';
 import { type CoverRecord, coverSchema } from './cover.js';
 import { whereThere } from './disk.js';
-import { abandon, commit, type Recovery, recover, stage, stagingOf } from './journal.js';
+import { abandon, commit, type Recovery, recover, type Staging, stage, stagingOf } from './journal.js';
 import { chainedRows, type LedgerEntry } from './ledger.js';
 import { type Lock, releaseLock, takeLock } from './lock.js';
 import { type BriefRecord, recordSchema } from './record.js';
@@ -112,14 +112,18 @@ export async function filedKinds(archive: Archive, date: string, name: string): 
   return kinds.filter((kind) => names.has(`${name}.${kind}`));
 }
 
-/** Every record of the dated folder by its slug. @throws ArchiveError naming a record that can't be read. */
-export async function filedRecords(archive: Archive, date: string): Promise<Map<string, FiledRecord>> {
+/** The records of the dated folder by their slugs, but for those that are about to be written. @throws ArchiveError naming a record that can't be read. */
+export async function filedRecords(
+  archive: Archive,
+  date: string,
+  except: ReadonlyMap<string, unknown> = new Map(),
+): Promise<Map<string, FiledRecord>> {
   const names = await whereThere(() => readdir(join(archive.folder, date)), []);
   const slugs = names
     .filter((name) => name.endsWith('.json') && name !== 'cover.json')
     .map((name) => name.slice(0, -5));
   const records = new Map<string, FiledRecord>();
-  for (const slug of slugs.sort()) {
+  for (const slug of slugs.filter((each) => !except.has(each)).sort()) {
     const file = join(archive.folder, date, `${slug}.json`);
     try {
       records.set(slug, parsedRecord(await readFile(file, 'utf8')));
@@ -151,10 +155,12 @@ function recordIssue(error: unknown): string | null {
 
 /** Writes a brief's or a cover's files beside their place in `folder` (the date, or `trial`). */
 export async function stageFiles(archive: Archive, folder: string, name: string, files: Files): Promise<void> {
-  for (const kind of kinds) {
-    const content = files[kind];
-    if (content !== undefined) await stage(stagingOf(archive.folder), `${folder}/${name}.${kind}`, content);
-  }
+  await inArchive(archive, async (staging) => {
+    for (const kind of kinds) {
+      const content = files[kind];
+      if (content !== undefined) await stage(staging, `${folder}/${name}.${kind}`, content);
+    }
+  });
 }
 
 /** The folder below a dated one, `replaced/1`, `replaced/2` …, that what this run replaces is kept in. */
@@ -165,10 +171,12 @@ export async function nextReplaced(archive: Archive, date: string): Promise<stri
 
 /** Stages a copy of a brief's or cover's files as they are now, to be kept in the folder `replaced`. */
 export async function setAside(archive: Archive, date: string, name: string, replaced: string): Promise<void> {
-  for (const kind of await filedKinds(archive, date, name)) {
-    const content = await readFile(join(archive.folder, date, `${name}.${kind}`));
-    await stage(stagingOf(archive.folder), `${replaced}/${name}.${kind}`, content);
-  }
+  await inArchive(archive, async (staging) => {
+    for (const kind of await filedKinds(archive, date, name)) {
+      const content = await readFile(join(archive.folder, date, `${name}.${kind}`));
+      await stage(staging, `${replaced}/${name}.${kind}`, content);
+    }
+  });
 }
 
 /** Puts everything staged for the date in its place, takes `removals` (paths below the archive) away, writes the ledger. */
@@ -178,16 +186,25 @@ export async function fileBriefs(
   entries: readonly LedgerEntry[],
   removals: readonly string[],
 ): Promise<void> {
-  const staging = stagingOf(archive.folder);
-  const isNew = !(await whereThere(async () => (await stat(join(archive.folder, date))).isDirectory(), false));
-  const moves = isNew ? [date] : await filesBelow(staging.folder, date);
-  const ledger = await whereThere(() => readFile(join(archive.folder, 'ledger.csv'), 'utf8'), null);
-  await commit(staging, { moves, removals: [...removals], ledgerRows: chainedRows(ledger, entries) });
+  await inArchive(archive, async (staging) => {
+    const isNew = !(await whereThere(async () => (await stat(join(archive.folder, date))).isDirectory(), false));
+    const moves = isNew ? [date] : await filesBelow(staging.folder, date);
+    const ledger = await whereThere(() => readFile(join(archive.folder, 'ledger.csv'), 'utf8'), null);
+    await commit(staging, { moves, removals: [...removals], ledgerRows: chainedRows(ledger, entries) });
+  });
 }
 
 /** Puts the staged trial in place of the last one. */
 export async function fileTrial(archive: Archive): Promise<void> {
-  await commit(stagingOf(archive.folder), { moves: ['trial'], removals: [], ledgerRows: [] });
+  await inArchive(archive, (staging) => commit(staging, { moves: ['trial'], removals: [], ledgerRows: [] }));
+}
+
+async function inArchive(archive: Archive, step: (staging: Staging) => Promise<void>): Promise<void> {
+  try {
+    await step(stagingOf(archive.folder));
+  } catch (error) {
+    throw archiveError(error, archive.folder);
+  }
 }
 
 async function filesBelow(root: string, folder: string): Promise<string[]> {

@@ -184,7 +184,7 @@ const printedRow = z.strictObject({
   range80: range,
   range95: range,
   /**
-   * The same period (or periods) a year before, to `places` and not to the step, being known; null where it is
+   * The same period (or periods) a year before, to the plan's decimal places, being known; null where it is
    * missing or itself ahead.
    */
   lastYear: missable,

@@ -79,6 +79,14 @@ describe('what a write does', () => {
     expect([...one.keys()]).toHaveLength(19);
     for (const [name, bytes] of one) expect(two.get(name)?.equals(bytes), name).toBe(true);
     for (const name of briefs) recordSchema.parse(JSON.parse(String(one.get(`${name}.json`))));
+
+    // A file that was lost is made again; the others, and the ledger, stay as they are.
+    const ledger = await readFile(join(places[0] ?? '', 'out/ledger.csv'), 'utf8');
+    for (const lost of ['mooring-rope.pdf', 'visitor-nights.csv', 'workshop-labour.html'])
+      await rm(join(dated(places[0] ?? ''), lost));
+    expect((await run('write', join(places[0] ?? '', 'plan.yaml'), '--quiet')).status).toBe(0);
+    expect(await contents(dated(places[0] ?? ''))).toEqual(one);
+    expect(await readFile(join(places[0] ?? '', 'out/ledger.csv'), 'utf8')).toBe(ledger);
   });
 
   test('only and quiet; a later run completes the folder and the cover', async () => {
@@ -106,6 +114,7 @@ describe('what a write does', () => {
     expect((await run('write', plan, '--no-pdf', '--quiet')).status).toBe(0);
     const figures = join(place, 'figures.csv');
     await writeFile(figures, (await readFile(figures, 'utf8')).replace('2026-Q3,521', '2026-Q3,530'));
+    for (const name of ['antifouling-paint.pdf', 'cover.pdf']) await writeFile(join(dated(place), name), 'old print');
     const before = await contents(dated(place));
     const refused = await run('write', plan, '--no-pdf');
     expect(refused.status).toBe(2);
@@ -114,7 +123,27 @@ describe('what a write does', () => {
     expect((await run('write', plan, '--no-pdf', '--replace', '--quiet')).status).toBe(0);
     const kept = await readFile(join(dated(place), 'replaced/1/antifouling-paint.json'));
     expect(before.get('antifouling-paint.json')?.equals(kept)).toBe(true);
+    // No print of the old figures stays beside the new record; it is kept with what was replaced.
+    expect(await readdir(join(dated(place), 'replaced/1'))).toEqual([
+      ...['csv', 'html', 'json', 'pdf'].map((kind) => `antifouling-paint.${kind}`),
+      ...['html', 'json', 'pdf'].map((kind) => `cover.${kind}`),
+    ]);
+    expect((await readdir(dated(place))).filter((name) => name.endsWith('.pdf'))).toEqual([]);
     expect(await readFile(join(place, 'out/ledger.csv'), 'utf8')).toMatch(/replaced\/1\/antifouling-paint\.json/);
+  });
+
+  test('a record that was damaged is refused, and replaced on request', async () => {
+    const place = await planFolder('damaged');
+    const plan = join(place, 'plan.yaml');
+    expect((await run('write', plan, '--no-pdf', '--quiet')).status).toBe(0);
+    const whole = await contents(dated(place));
+    await writeFile(join(dated(place), 'mooring-rope.json'), '{}');
+    const refused = await run('write', plan, '--no-pdf');
+    expect(refused.status).toBe(2);
+    expect(refused.err).toMatch(/"Mooring rope" has a brief .*mooring-rope\.json can't be read as a record/);
+    expect((await run('write', plan, '--no-pdf', '--quiet', '--replace')).status).toBe(0);
+    expect(await contents(dated(place))).toEqual(whole);
+    expect(await readFile(join(dated(place), 'replaced/1/mooring-rope.json'), 'utf8')).toBe('{}');
   });
 
   test('a trial is marked, and stands outside the ledger', async () => {
@@ -198,6 +227,22 @@ test('killed at any moment, a write leaves no half brief, and the next one compl
   const ledgers = await Promise.all([place, reference].map((each) => readFile(join(each, 'out/ledger.csv'), 'utf8')));
   expect(ledgers[0]).toBe(ledgers[1]);
   expect((await readdir(join(place, 'out'))).sort()).toEqual(['2026-10-05', 'ledger.csv']);
+});
+
+test.each([
+  ['SIGINT', 130],
+  ['SIGTERM', 143],
+] as const)('stopped by %s, a write ends at once and leaves everything as it was', async (signal, status) => {
+  const place = await planFolder(signal);
+  const child = started('write', join(place, 'plan.yaml'), '--no-pdf');
+  const end = ended(child);
+  child.stderr?.on('data', (text) => {
+    if (String(text).includes('1 of 4')) child.kill(signal);
+  });
+  const { status: found, err } = await end;
+  expect(found).toBe(status);
+  expect(err).toMatch(/nothing was filed/);
+  expect(await readdir(place)).toEqual(['figures.csv', 'plan.yaml']);
 });
 
 async function contents(place: string): Promise<Map<string, Buffer>> {
