@@ -4,13 +4,14 @@
  */
 import type { Outlook } from '../outlook/outlook.js';
 import type { Fit } from '../sarima/fit.js';
-import { piWeights, psiWeights } from '../sarima/weights.js';
+import { psiWeights } from '../sarima/weights.js';
 import type { Context } from './context.js';
 import { type Expansion, expand, expandDifferenced, type LagTerm, weightTex } from './expand.js';
 import { factsOf } from './facts.js';
 import { meanings } from './meanings.js';
 import { printedNumbers } from './printed.js';
 import { typeset } from './typeset.js';
+import { pastWeights } from './weights.js';
 import { workedSum } from './worked-sum.js';
 
 export function explain(fit: Fit, outlook: Outlook, context: Context) {
@@ -36,7 +37,7 @@ function equationOf(fit: Fit, outlook: Outlook, context: Context) {
       places: context.places,
       periods: context.periods,
     }),
-    weights: pastWeights(fit, context),
+    weights: pastWeights(fit, context.season),
     echo: Array.from(psiWeights(fit, 2 * context.season + 1), (effect, step) => ({ step, effect })),
     meanings: meanings(fit, named('lasting'), named('passing')),
   };
@@ -49,12 +50,6 @@ const written = ({ lags, surprises, constant }: Expansion) => ({
 });
 
 const writtenTerm = ({ lag, weight, products }: LagTerm) => ({ lag, weight, tex: weightTex(products) });
-
-/** The weights that an unending past would have, over three years or as far as the figures go. */
-function pastWeights(fit: Fit, { season }: Context) {
-  const count = Math.min(Math.max(3 * season, 8), fit.values.length);
-  return Array.from(piWeights(fit, count), (weight, i) => ({ lag: i + 1, weight }));
-}
 
 /** For each period ahead the figure a year before; null where it is missing or itself ahead. */
 function lastYears({ values }: Fit, { periods }: Outlook, { season }: Context): (number | null)[] {

@@ -79,40 +79,59 @@ function directionOf({ values }: Fit, { season }: Context): Facts['direction'] {
   return { kind, perYear, years };
 }
 
-/** Shares of the year by position over the latest full reporting years, at most five. */
+/** Shares of the year by position over the latest full reporting years, at most five. Null without two such years. */
 function seasonOf({ values }: Fit, { season, positions }: Context): Facts['season'] {
-  const years: number[][] = [];
-  for (let start = positions.indexOf(1); start >= 0 && start + season <= values.length; start += season)
-    years.push(Array.from(values.slice(start, start + season)));
-  const full = years.filter((year) => year.every((value) => Number.isFinite(value)));
+  const full: number[][] = [];
+  for (let start = positions.indexOf(1); start >= 0 && start + season <= values.length; start += season) {
+    const year = Array.from(values.slice(start, start + season));
+    if (year.every(Number.isFinite) && total(year) > 0) full.push(year);
+  }
   if (full.length < 2 || values.some((value) => value < 0)) return null;
-  const recent = full.slice(-5);
-  const shares = Array.from({ length: season }, (_, i) => mean(recent.map((year) => year[i] / total(year))));
-  const even = 1 / season;
-  const highest = Math.max(...shares);
+  const recent = full.slice(-5).map((year) => year.map((value) => value / total(year)));
+  const shares = Array.from({ length: season }, (_, i) => mean(recent.map((year) => year[i])));
+  const peak = peakOf(shares);
   const lowest = Math.min(...shares);
-  const top = shares.indexOf(highest);
-  // Neighbours that are clearly above an even share stand with the peak.
-  const peak = [top];
-  for (const side of [-1, 1])
-    for (let i = 1; i < season; i++) {
-      const next = (((top + side * i) % season) + season) % season;
-      if (peak.includes(next) || shares[next] < 1.15 * even) break;
-      if (side < 0) peak.unshift(next);
-      else peak.push(next);
-    }
-  const highestIn = full.map((year) => year.indexOf(Math.max(...year)));
-  // A swing of less than a twentieth of an even share is no season to speak of; under a quarter it is weak.
-  const swing = (highest - lowest) / even;
   return {
-    strength: swing < 0.05 ? 'none' : swing < 0.25 ? 'weak' : 'strong',
+    strength: strengthOf(shares, recent),
     peak: peak.map((i) => i + 1),
-    share: peak.reduce((sum, i) => sum + shares[i], 0),
+    share: total(peak.map((i) => shares[i])),
     trough: shares.indexOf(lowest) + 1,
     troughShare: lowest,
-    everyYear: highestIn.every((i) => peak.includes(i)),
+    everyYear: full.every((year) => peak.includes(year.indexOf(Math.max(...year)))),
     fullYears: full.length,
   };
+}
+
+/** The highest position and, up to half a year in all, the neighbours whose share is clearly above an even one. */
+function peakOf(shares: readonly number[]): number[] {
+  const m = shares.length;
+  const peak = [shares.indexOf(Math.max(...shares))];
+  while (peak.length < Math.floor(m / 2)) {
+    const before = (peak[0] + m - 1) % m;
+    const after = (peak[peak.length - 1] + 1) % m;
+    const next = shares[before] > shares[after] ? before : after;
+    // Clearly: by 15%.
+    if (shares[next] < 1.15 / m) break;
+    if (next === before) peak.unshift(next);
+    else peak.push(next);
+  }
+  return peak;
+}
+
+/**
+ * No season to speak of: the positions' shares differ by less than a twentieth of an even share, or no more than the
+ * years differ among themselves. Weak: by less than a quarter.
+ */
+function strengthOf(shares: readonly number[], years: readonly (readonly number[])[]): 'strong' | 'weak' | 'none' {
+  const m = shares.length;
+  const swing = (Math.max(...shares) - Math.min(...shares)) * m;
+  // Analysis of variance: F of the positions against the rest. A random one is above 4 about once in twenty times
+  // with four positions and four or five years, more rarely with more positions.
+  const between = (years.length * total(shares.map((share) => (share - 1 / m) ** 2))) / (m - 1);
+  const rest = total(years.map((year) => total(year.map((share, i) => (share - shares[i]) ** 2))));
+  const within = rest / ((years.length - 1) * (m - 1));
+  if (swing < 0.05 || between < 4 * within) return 'none';
+  return swing < 0.25 ? 'weak' : 'strong';
 }
 
 /** The last figure against what the model expected one period before. */
@@ -151,7 +170,7 @@ function caveatsOf(fit: Fit, { season, events }: Context, relativeRange: number 
   return [
     ...(fit.settled ? [] : [{ ...none, id: 'unsettled-fit' as const }]),
     // Four full years is the least from which a season is learned with some trust.
-    ...(season > 1 && years < 6 ? [{ ...none, id: 'short-history' as const, count: Math.floor(years) }] : []),
+    ...(season > 1 && years < 4 ? [{ ...none, id: 'short-history' as const, count: Math.floor(years) }] : []),
     ...(relativeRange !== null && relativeRange > 0.5
       ? [{ ...none, id: 'wide-range' as const, share: relativeRange }]
       : []),

@@ -69,20 +69,22 @@ function sizeOf(value: number, role: Role): Meaning['size'] {
   return size < 0.1 ? 'none' : size < 1 / 3 ? 'small' : size < 2 / 3 ? 'medium' : 'large';
 }
 
-/** How far the first forecast's middle moves, in units, for one standard error more (where that leaves the stationary region, less). */
+/**
+ * How far the first forecast's middle moves, in units, for one standard error more: by the delta method, as a whole
+ * standard error can lie beyond the region where the model is stationary and invertible.
+ */
 function sensitivity(fit: Fit, { name, standardError }: Coefficient): number | null {
   if (standardError === null) return null;
   const { from } = parseScale(fit.scale);
-  const here = from(predict(fit, 1).mean[0]);
-  for (const side of [1, -1]) {
-    try {
-      const moved = from(predict(movedBy(fit, name, side * standardError), 1).mean[0]);
-      if (Number.isFinite(moved)) return side * (moved - here);
-    } catch {
-      // One standard error away the model has no stationary form: look the other way.
-    }
+  const at = (step: number) => from(predict(movedBy(fit, name, step), 1).mean[0]);
+  const step = standardError / 1000;
+  try {
+    const moved = ((at(step) - at(-step)) / (2 * step)) * standardError;
+    return Number.isFinite(moved) ? moved : null;
+  } catch {
+    // Even so small a step leaves the stationary region: there is nothing to say.
+    return null;
   }
-  return null;
 }
 
 function movedBy(fit: Fit, name: string, step: number): Fit {

@@ -2,8 +2,10 @@
  * The numbers as page 1 prints them.
  *
  * The rule: a number is rounded to the largest power of ten that is not above a tenth of the narrowest 8-in-10 range
- * beside it, and never finer than the plan's decimal places. The total's expected value is the sum of the printed rows.
- * Changes are in whole per cent of the printed numbers, so that a reader can check them.
+ * beside it, and never finer than the plan's decimal places. It is rounded to those places first, as the worked sum
+ * prints it, so that a reader who rounds on from there gets the same. The total's expected value is the sum of the
+ * printed rows, and the answer is that sum, rounded on by the total's own range. Changes are in whole per cent of the
+ * printed numbers. Figures of the year before are known, and stand as they were, to the plan's decimal places.
  */
 import type { Outlook } from '../outlook/outlook.js';
 import { decimal, roundTo, sum, toNumber } from './decimals.js';
@@ -34,15 +36,21 @@ export interface Printed {
 /** `lastYears`: for each period ahead the figure a year before, null where missing or itself ahead. */
 export function printedNumbers(outlook: Outlook, places: number, lastYears: readonly (number | null)[]): Printed {
   const total = outlook.totals[0];
+  const round = (number: number, to: number) => roundTo(roundTo(number, places), to);
+  const both = ([low, high]: readonly [number, number], to: number): [number, number] => [
+    round(low, to),
+    round(high, to),
+  ];
   const rowPlaces = placesFor(Math.min(...outlook.periods.map(({ range80 }) => width(range80))), places);
+  const shownPlaces = Math.max(rowPlaces, 0);
   const row = (numbers: Omit<PrintedRow, 'lastYear' | 'change'>, before: number | null): PrintedRow => {
-    const lastYear = before === null ? null : roundTo(before, Math.max(places, 0));
+    const lastYear = before === null ? null : roundTo(before, places);
     return { ...numbers, lastYear, change: change(numbers.expected, lastYear) };
   };
   const periods = outlook.periods.map((period, h) =>
     row(
       {
-        expected: roundTo(period.expected, rowPlaces),
+        expected: round(period.expected, rowPlaces),
         range80: both(period.range80, rowPlaces),
         range95: both(period.range95, rowPlaces),
       },
@@ -52,11 +60,10 @@ export function printedNumbers(outlook: Outlook, places: number, lastYears: read
   const before = lastYears.every((value) => value !== null)
     ? toNumber(sum(lastYears.map((value) => decimal(value ?? 0, places))))
     : null;
-  const totalPlaces = placesFor(width(total.range80), places);
-  const summed = toNumber(sum(periods.map(({ expected }) => decimal(expected, Math.max(rowPlaces, 0)))));
-  const answerExpected = roundTo(total.expected, totalPlaces);
+  const totalPlaces = Math.min(placesFor(width(total.range80), places), rowPlaces);
+  const summed = toNumber(sum(periods.map(({ expected }) => decimal(expected, shownPlaces))));
   return {
-    places: Math.max(rowPlaces, 0),
+    places: shownPlaces,
     step: 10 ** -rowPlaces,
     periods,
     total: row(
@@ -66,7 +73,7 @@ export function printedNumbers(outlook: Outlook, places: number, lastYears: read
     answer: {
       places: Math.max(totalPlaces, 0),
       step: 10 ** -totalPlaces,
-      expected: answerExpected,
+      expected: roundTo(summed, totalPlaces),
       range80: both(total.range80, totalPlaces),
       lastYear: before,
       change: change(summed, before),
@@ -75,11 +82,6 @@ export function printedNumbers(outlook: Outlook, places: number, lastYears: read
 }
 
 const width = ([low, high]: readonly [number, number]): number => high - low;
-
-const both = ([low, high]: readonly [number, number], places: number): [number, number] => [
-  roundTo(low, places),
-  roundTo(high, places),
-];
 
 /** Decimal places (negative: tens, hundreds) that a range of this width warrants, `most` at the finest. */
 function placesFor(range: number, most: number): number {

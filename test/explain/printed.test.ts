@@ -71,3 +71,12 @@ test('decimals are rounded as by hand, halves away from zero, also to tens and h
   ] as const)
     expect(toNumber(decimal(number, places))).toBe(expected);
 });
+
+test('a number is rounded to the plan’s places before it is rounded on, as the worked sum prints it', () => {
+  // 314.96 prints as 315 on the worked sum; whoever rounds that to tens gets 320.
+  const { periods, answer, total } = printedNumbers(outlookOf([row(314.96, 60), row(200, 60)], 90), 0, [287.4, 210]);
+  expect(periods[0]).toMatchObject({ expected: 320, lastYear: 287, change: 11 });
+  // The answer is the printed total, so that the sentence and the table agree.
+  expect([total.expected, answer.expected]).toEqual([520, 520]);
+  expect(total.lastYear).toBe(497);
+});
