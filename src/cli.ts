@@ -3,10 +3,10 @@
 import { constants } from 'node:os';
 import { SingleBar } from 'cli-progress';
 import { Command, CommanderError } from 'commander';
+import { shortPath } from './commands/short-path.js';
 import { SOFTWARE } from './commands/software.js';
 import { startPlan } from './commands/start.js';
 import type { Reporter } from './commands/work.js';
-import { shortPath, writeBriefs } from './commands/write.js';
 
 const SOME_FAILED = 1;
 const UNUSABLE = 2;
@@ -68,6 +68,8 @@ interface WriteArguments {
 }
 
 async function write(plan: string, { quiet = false, ...options }: WriteArguments): Promise<void> {
+  // Loaded when it is needed: charts and the browser's driver take a second that --help can do without.
+  const { writeBriefs } = await import('./commands/write.js');
   const { report, end } = reporter(quiet);
   const stop = new AbortController();
   for (const signal of ['SIGINT', 'SIGTERM'] as const) process.once(signal, () => stop.abort(new Interrupted(signal)));

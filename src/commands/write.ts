@@ -3,7 +3,7 @@
  *
  *   plan, figures -> checks -> archive (lock, recover) -> records -> pages -> file all at once
  */
-import { dirname, join, relative, resolve } from 'node:path';
+import { dirname, join, resolve } from 'node:path';
 import { readFigures, type SeriesFigures } from '../figures/figures.js';
 import { type Fault, InputError } from '../figures/input-error.js';
 import { suggestion } from '../figures/nearest.js';
@@ -152,10 +152,4 @@ function filesToOpen(work: Work, failures: readonly { readonly name: string }[])
   const isMade = ({ name }: PlannedSeries): boolean => !failures.some((failure) => failure.name === name);
   const slugs = work.wanted.filter(isMade).map(({ slug }) => slug);
   return ['cover', ...slugs].map((slug) => join(work.archive.folder, folderOf(work), `${slug}.${kind}`));
-}
-
-/** A path as the user would type it from where she stands, where that is shorter. */
-export function shortPath(path: string): string {
-  const short = relative(process.cwd(), path);
-  return short !== '' && short.length < path.length ? short : path;
 }
