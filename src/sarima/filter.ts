@@ -74,6 +74,7 @@ export function createFilter(arma: Arma, data: readonly Float64Array[], traced =
     from,
     count: diffuse.ordinary,
     columns: data.map(() => new Float64Array(diffuse.ordinary)),
+    starts: new Int32Array(data.length),
     root: new Float64Array(diffuse.ordinary),
     logDeterminant: 0,
     covariances: createAutocovarianceSpace(arma.r),

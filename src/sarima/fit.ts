@@ -6,31 +6,22 @@
  * Signs as in Box, Jenkins, Reinsel & Ljung, "Time Series Analysis", 5th ed. 2015, but with plus signs on the
  * moving-average side.
  */
-import { type Arma, createArma, expand } from './arma.js';
 import { MISSING, ORDINARY } from './diffuse.js';
-import { createFilter, type FilterSpace, filterErrors } from './filter.js';
+import { createEngine, createFilterEngine, type Engine } from './engine.js';
+import type { FilterSpace } from './filter.js';
 import { type Form, formText, lostToDifferencing, parseForm, polynomialCoefficients } from './form.js';
-import { estimateCovariance, invert } from './information.js';
-import { createLikelihood, type Innovations, predictionErrors } from './likelihood.js';
-import { type Minimum, minimize, type Problem } from './minimize.js';
-import { type ConcentratedSpace, concentrate, createConcentrated, minusLogLikelihood } from './objective.js';
-import { toCoefficients } from './partial.js';
-import { differencedColumns, type Prepared, prepare } from './prepare.js';
+import { estimateCovariance } from './information.js';
+import type { Minimum } from './minimize.js';
+import { effectsCovariance, logLikelihoodAt } from './objective.js';
+import { type Prepared, prepare } from './prepare.js';
+import { defaultPriors, noPenalty, type Penalty, penaltyOf, type Priors } from './priors.js';
 import { checkRegressors, type Regressor } from './regressors.js';
 import { nearlyCancels, nearUnitRoots } from './roots.js';
 import { parseScale, toScale } from './scale.js';
-import { firstGuess, guess, startValues } from './start.js';
+import { search } from './search.js';
 
+export type { Prior, Priors } from './priors.js';
 export type FittedBy = 'maximum-likelihood' | 'shrunk';
-
-/** What an estimate is pulled towards, and how strongly. */
-export interface Priors {
-  readonly coefficients: Readonly<
-    Record<string, { readonly centre: number; readonly spread: number; readonly on: 'coefficient' | 'partial' }>
-  >;
-  /** The weight λ of the constant's ridge: so many observations' worth of a constant of zero. */
-  readonly ridge: number;
-}
 
 export interface FitOptions {
   readonly form: string | Form;
@@ -39,6 +30,7 @@ export interface FitOptions {
   /** Whether the differenced series has a mean of its own; unless given, where nothing is differenced. */
   readonly constant?: boolean;
   readonly fittedBy?: FittedBy;
+  /** What `shrunk` pulls towards; `defaultPriors` unless given. */
   readonly priors?: Priors | null;
   readonly regressors?: readonly Regressor[];
   /** Indices of periods whose figure is only a lower bound. */
@@ -78,7 +70,9 @@ export interface Fit {
   readonly innovationVariance: number;
   /** Of the figures on the model's scale, without the scale's Jacobian. */
   readonly logLikelihood: number;
-  /** Akaike's criterion corrected for small samples; null where too few observations are left for it. */
+  /** What the coefficients count for: their number, or less where they are shrunk. */
+  readonly effectiveCoefficients: number;
+  /** Akaike's criterion corrected for small samples; null where too few observations are left for it, and shrunk. */
   readonly aicc: number | null;
   /** Observations after differencing. */
   readonly observations: number;
@@ -99,9 +93,6 @@ export interface Fit {
   readonly regressors: readonly { readonly name: string; readonly values: Float64Array }[];
 }
 
-/** An unfinished search promises less than this much more log-likelihood when it stops. */
-const TOLERANCE = 1e-8;
-
 /**
  * Fits a model to figures (NaN where missing). Throws an Error that says what is wrong where the figures or the options
  * can't be used: too few figures, a figure off the scale, nothing that varies, regressors that can't be told apart.
@@ -110,10 +101,13 @@ export function fitModel(values: ArrayLike<number>, options: FitOptions): Fit {
   const asked = normalize(values, options);
   const series = toScale(asked.values, asked.scale);
   checkEnough(asked, series);
-  const prepared = prepare(asked.form, series, asked.constant, asked.regressors);
-  const engine = createEngine(asked.form, prepared);
-  const found = search(engine, prepared);
-  return report(asked, prepared, engine, found);
+  const { form, constant, regressors, priors } = asked;
+  const columns = regressors.length + (constant ? 1 : 0);
+  const penalty = priors === null ? noPenalty(columns) : penaltyOf(form, priors, constant, columns);
+  const prepared = prepare(form, series, constant, regressors, penalty.ridge);
+  const engine = createEngine(form, prepared, penalty);
+  const found = search(engine.arma, engine.problem, prepared.startColumns);
+  return report(asked, prepared, penalty, engine, found);
 }
 
 interface Asked {
@@ -136,7 +130,6 @@ function normalize(values: ArrayLike<number>, options: FitOptions): Asked {
       `model ${formText(form)} can't have a constant: it is differenced ${differences} times; leave the constant out`,
     );
   const fittedBy = options.fittedBy ?? 'maximum-likelihood';
-  if (fittedBy !== 'maximum-likelihood') throw new Error(`fitting "${fittedBy}" is not available yet`);
   if ((options.soldOut ?? []).length > 0) throw new Error('periods that were sold out are not available yet');
   const given = Float64Array.from(values);
   const odd = given.findIndex((x) => !Number.isFinite(x) && !Number.isNaN(x));
@@ -152,12 +145,15 @@ function normalize(values: ArrayLike<number>, options: FitOptions): Asked {
     scale,
     constant,
     fittedBy,
-    priors: null,
+    priors: fittedBy === 'shrunk' ? (options.priors ?? defaultPriors(form, scale, constant)) : null,
     regressors: regressors.map(({ name, values: column }) => ({ name, values: Float64Array.from(column) })),
   };
 }
 
-function checkEnough({ form, constant, regressors }: Asked, series: Float64Array): void {
+/** Shrunk, a model can do with this many differences. */
+const FEWEST_SHRUNK = 8;
+
+function checkEnough({ form, fittedBy, constant, regressors }: Asked, series: Float64Array): void {
   const there = series.reduce((count, y) => count + (Number.isNaN(y) ? 0 : 1), 0);
   const lost = lostToDifferencing(form);
   const coefficients = polynomialCoefficients(form);
@@ -165,95 +161,24 @@ function checkEnough({ form, constant, regressors }: Asked, series: Float64Array
   const needed =
     coefficients === 0
       ? lost + 2 + columns
-      : Math.max(2 * form.m + coefficients + lost + 3, 12, lost + coefficients + columns + 3);
+      : fittedBy === 'shrunk'
+        ? lost + Math.max(FEWEST_SHRUNK, columns + 3)
+        : Math.max(2 * form.m + coefficients + lost + 3, 12, lost + coefficients + columns + 3);
   if (there < needed)
     throw new Error(
       `model ${formText(form)} needs at least ${needed} figures; there are ${there}: use a shorter model`,
     );
 }
 
-/** The likelihood of one prepared series, as a function of z. */
-interface Engine {
-  readonly arma: Arma;
-  readonly innovations: Innovations;
-  readonly concentrated: ConcentratedSpace;
-  /** The filter, where the series has gaps. */
-  readonly filter: FilterSpace | null;
-  readonly problem: Problem;
-}
-
-function createEngine(form: Form, prepared: Prepared): Engine {
-  const arma = createArma(form);
-  const filter = prepared.hasGaps ? createFilter(arma, prepared.columns) : null;
-  if (filter !== null && !filter.diffuse.settled)
-    throw new Error(
-      `model ${formText(form)}: the figures leave a part of the season unknown; every position of the season needs a figure`,
-    );
-  const fast = filter === null ? createLikelihood(arma, differencedColumns(form, prepared.columns)) : null;
-  const innovations: Innovations = filter ?? (fast as Innovations);
-  const regressors = prepared.columns.length - 1;
-  const concentrated = createConcentrated(innovations.count, regressors, new Float64Array(regressors));
-  const rows = new Float64Array(concentrated.residuals.length);
-  const run = fast === null ? () => filterErrors(filter as FilterSpace) : () => predictionErrors(fast);
-  const evaluate = (z: Float64Array) => {
-    toCoefficients(arma.blocks, z, arma.coefficients);
-    expand(arma);
-    if (!run() || !concentrate(concentrated, innovations)) return Number.POSITIVE_INFINITY;
-    // log Σ(e/√f)² + mean log f as the log of one sum of squares.
-    const share = Math.exp(innovations.logDeterminant / (2 * innovations.count));
-    const { residuals } = concentrated;
-    for (let t = 0; t < rows.length; t++) rows[t] = residuals[t] * share;
-    return minusLogLikelihood(innovations, concentrated.sumOfSquares);
-  };
-  return {
-    arma,
-    innovations,
-    concentrated,
-    filter,
-    problem: {
-      parameters: arma.coefficients.length,
-      weight: innovations.count,
-      rows,
-      penalties: new Float64Array(0),
-      evaluate,
-    },
-  };
-}
-
-/** Near the unit circle: partial autocorrelations beyond 0.96. */
-const SUSPICIOUS = 2;
-
-function search({ arma, problem }: Engine, prepared: Prepared): Minimum {
-  const { form } = arma;
-  let best = minimize(problem, startValues(arma, prepared.startColumns).z, TOLERANCE);
-  const isPlain = best.settled && best.z.every((value) => Math.abs(value) < SUSPICIOUS);
-  const isMixed = form.p > 0 && form.q > 0;
-  // A likelihood with both sides, or with a seasonal autoregression, often has a second summit.
-  const others = [
-    ...(isPlain ? [] : [firstGuess(arma)]),
-    ...(isMixed || form.P > 0 ? [guess(arma, { ar: PERSISTENT, ma: -PERSISTENT / 2 })] : []),
-    ...(isMixed ? [guess(arma, { ar: -PERSISTENT / 3, ma: PERSISTENT / 3 })] : []),
-  ];
-  let { evaluations } = best;
-  for (const start of others) {
-    const found = minimize(problem, start, TOLERANCE);
-    evaluations += found.evaluations;
-    if (found.value < best.value || !Number.isFinite(best.value)) best = found;
-  }
-  return { ...best, evaluations };
-}
-
-/** A first partial autocorrelation of 0.9. */
-const PERSISTENT = 1.5;
-
-function report(asked: Asked, prepared: Prepared, engine: Engine, found: Minimum): Fit {
+function report(asked: Asked, prepared: Prepared, penalty: Penalty, engine: Engine, found: Minimum): Fit {
   const { form } = asked;
-  const { arma, innovations, concentrated, problem } = engine;
   const { p, q, P } = form;
-  const covariance = covarianceOf(engine, prepared, found.z);
-  if (!Number.isFinite(problem.evaluate(found.z)))
+  const { z } = found;
+  const information = informationAt(engine, prepared, z);
+  const exact = prepared.gaps.length > 0 ? createFilterEngine(form, prepared, penalty) : { ...engine, filter: null };
+  if (!Number.isFinite(exact.problem.evaluate(z)))
     throw new Error(`model ${formText(form)} has no likelihood for these figures: use a simpler model`);
-  const n = innovations.count;
+  const { arma, concentrated, observations: n } = exact;
   const { unit, unitOf, before } = prepared;
   const effects = Array.from(concentrated.effects, (effect, i) => before[i] + (effect * unit) / unitOf[i]);
   const polynomials = {
@@ -263,9 +188,8 @@ function report(asked: Asked, prepared: Prepared, engine: Engine, found: Minimum
     Theta: [...arma.coefficients.subarray(p + q + P)],
   };
   const estimates = [...arma.coefficients, ...effects];
-  const logLikelihood = -minusLogLikelihood(innovations, concentrated.sumOfSquares) - n * Math.log(unit);
+  const logLikelihood = logLikelihoodAt(exact.innovations, concentrated) - n * Math.log(unit);
   const sigma = Math.sqrt(concentrated.sumOfSquares / n);
-  const { residuals, standardizedResiduals } = residualsOf(engine, prepared, sigma);
   return {
     form,
     season: asked.season,
@@ -273,21 +197,20 @@ function report(asked: Asked, prepared: Prepared, engine: Engine, found: Minimum
     constant: asked.constant,
     fittedBy: asked.fittedBy,
     priors: asked.priors,
-    coefficients: coefficientNames(asked).map(({ name, symbol }, i) => {
-      const variance = covariance?.[i][i] ?? 0;
+    coefficients: namesOf(asked).map(({ name, symbol }, i) => {
+      const variance = information.covariance?.[i][i] ?? 0;
       return { name, symbol, value: estimates[i], standardError: variance > 0 ? Math.sqrt(variance) : null };
     }),
-    covariance,
+    ...information,
     ...polynomials,
     constantValue: asked.constant ? effects[0] : 0,
     effects: asked.constant ? effects.slice(1) : effects,
     innovationVariance: (sigma * unit) ** 2,
     logLikelihood,
-    aicc: correctedCriterion(logLikelihood, estimates.length + 1, n),
+    aicc: asked.fittedBy === 'shrunk' ? null : correctedCriterion(logLikelihood, estimates.length + 1, n),
     observations: n,
-    residuals,
-    standardizedResiduals,
-    settled: found.settled || problem.parameters === 0,
+    ...residualsOf(exact, prepared, sigma),
+    settled: found.settled || engine.problem.parameters === 0,
     nearUnitRoots: nearUnitRoots(polynomials),
     nearlyCancels: nearlyCancels(polynomials),
     evaluations: found.evaluations,
@@ -296,37 +219,36 @@ function report(asked: Asked, prepared: Prepared, engine: Engine, found: Minimum
   };
 }
 
-/** Covariance of coefficients and effects, the effects in the user's units. */
-function covarianceOf(engine: Engine, prepared: Prepared, z: Float64Array): number[][] | null {
-  const { arma, innovations, concentrated, problem } = engine;
-  const k = concentrated.effects.length;
-  const joint = estimateCovariance(
+/** Covariance of coefficients and effects, the effects in the user's units, and what the coefficients count for. */
+function informationAt(
+  { arma, concentrated, observations, problem }: Engine,
+  { unit, unitOf }: Prepared,
+  z: Float64Array,
+): Pick<Fit, 'covariance' | 'effectiveCoefficients'> {
+  const { covariance, effective } = estimateCovariance(
     {
       blocks: arma.blocks,
       evaluate: problem.evaluate,
-      effects: concentrated.effects,
+      penalties: problem.penalties,
+      effects: concentrated.effects.subarray(concentrated.unknowns),
       effectsCovariance: (at) => {
         problem.evaluate(at);
-        const variance = concentrated.sumOfSquares / innovations.count;
-        const gram = new Float64Array(k * k);
-        for (let i = 0; i < k; i++)
-          for (let j = 0; j < k; j++) {
-            const a = innovations.columns[i + 1];
-            const b = innovations.columns[j + 1];
-            for (let t = 0; t < innovations.count; t++) gram[i * k + j] += (a[t] * b[t]) / variance;
-          }
-        return invert(gram, k);
+        return effectsCovariance(concentrated, observations);
       },
+      ridge: concentrated.ridge.subarray(concentrated.unknowns),
+      variance: () => concentrated.sumOfSquares / observations,
     },
     z,
   );
-  if (joint === null) return null;
-  const units = [...z.map(() => 1), ...prepared.unitOf.map((own) => prepared.unit / own)];
-  return joint.map((row, i) => row.map((value, j) => value * units[i] * units[j]));
+  const units = [...z.map(() => 1), ...unitOf.map((own) => unit / own)];
+  return {
+    covariance: covariance?.map((row, i) => row.map((value, j) => value * units[i] * units[j])) ?? null,
+    effectiveCoefficients: effective,
+  };
 }
 
 function residualsOf(
-  { innovations, concentrated, filter }: Engine,
+  { innovations, concentrated, filter }: Engine & { readonly filter: FilterSpace | null },
   { unit, columns }: Prepared,
   sigma: number,
 ): Pick<Fit, 'residuals' | 'standardizedResiduals'> {
@@ -351,7 +273,7 @@ function correctedCriterion(logLikelihood: number, parameters: number, n: number
   return left > 0 ? -2 * logLikelihood + 2 * parameters + (2 * parameters * (parameters + 1)) / left : null;
 }
 
-function coefficientNames({ form, constant, regressors }: Asked): { name: string; symbol: string }[] {
+function namesOf({ form, constant, regressors }: Asked): { name: string; symbol: string }[] {
   const numbered = (name: string, symbol: string, count: number) =>
     Array.from({ length: count }, (_, i) => ({ name: `${name}${i + 1}`, symbol: `${symbol}${subscript(i + 1)}` }));
   return [

@@ -23,6 +23,8 @@ export interface Innovations {
   readonly count: number;
   /** Column 0 the series, then the regressors; each error divided by √f. */
   readonly columns: readonly Float64Array[];
+  /** For each column the error before which all are zero. */
+  readonly starts: Int32Array;
   /** √f of each error, for unit innovation variance. */
   readonly root: Float64Array;
   /** Σ log f. */
@@ -51,6 +53,10 @@ export function createLikelihood(arma: Arma, data: readonly Float64Array[]): Lik
     data,
     count,
     columns: data.map(() => new Float64Array(count)),
+    starts: Int32Array.from(data, (column) => {
+      const first = column.findIndex((x) => x !== 0);
+      return first < 0 ? count : first;
+    }),
     root: new Float64Array(count),
     logDeterminant: 0,
     covariances: createAutocovarianceSpace(r),
@@ -63,7 +69,7 @@ export function createLikelihood(arma: Arma, data: readonly Float64Array[]): Lik
 
 /** Fills the errors for the polynomials in `space.arma`. False where they can't be computed. */
 export function predictionErrors(space: LikelihoodSpace): boolean {
-  const { arma, data, columns, root, first, H, Y, states, count } = space;
+  const { arma, data, columns, starts, root, first, H, Y, states, count } = space;
   const { r, ar, arLags } = arma;
   if (!firstColumn(arma, space.covariances, first)) return false;
   let F = first[0];
@@ -92,6 +98,7 @@ export function predictionErrors(space: LikelihoodSpace): boolean {
       product = 1;
     }
     for (let c = 1; c < states.length; c++) {
+      if (t < starts[c]) continue;
       const w = data[c][t];
       const a = states[c];
       const e = w - a[0];
@@ -125,15 +132,16 @@ export function predictionErrors(space: LikelihoodSpace): boolean {
 
 /** From time `from` on F is 1 and the gain constant: the state runs out over r steps, then only the lags remain. */
 function steadyErrors(space: LikelihoodSpace, from: number): void {
-  const { arma, data, columns, root, states, count } = space;
+  const { arma, data, columns, starts, root, states, count } = space;
   const { p, q, r, ar, ma, arLags, maLags } = arma;
   root.fill(1, from);
-  const direct = Math.max(from + q, p);
   for (let c = 0; c < data.length; c++) {
     const series = data[c];
     const errors = columns[c];
     const a = states[c];
-    let t = from;
+    // With nothing but zeros before, the state is empty.
+    const direct = Math.max(starts[c] > from ? q : from + q, p);
+    let t = Math.max(from, starts[c]);
     for (; t < count && t < direct; t++) {
       const w = series[t];
       const e = w - a[0];

@@ -1,10 +1,17 @@
 /**
  * The likelihood as a function of the polynomials alone: the regressors' effects and the innovation variance are
  * concentrated out, the effects by generalized least squares on the filtered columns.
+ *
+ * The first of the regressors may be unknown figures: columns that are 1 in one period and 0 in all others, V their
+ * filtered form. An unknown figure has a flat prior and is integrated out, which leaves its least squares estimate and
+ * ½ log |V'V| (de Jong, "The diffuse Kalman filter", Annals of Statistics 19, 1991). The result differs from the
+ * diffuse filter's by a number that depends on the gaps' places alone, and costs a fraction of it where gaps are few.
  */
 import type { Innovations } from './likelihood.js';
 
 export interface ConcentratedSpace {
+  /** How many of the regressors, at the front, are unknown figures. */
+  readonly unknowns: number;
   /** V'V, k by k, then its Cholesky factor in the lower triangle. */
   readonly gram: Float64Array;
   /** Effects of the regressors, in the columns' own scaling. */
@@ -15,65 +22,60 @@ export interface ConcentratedSpace {
   readonly residuals: Float64Array;
   /** Sum of squares of `residuals`. */
   sumOfSquares: number;
+  /** log |V'V| of the unknown figures. */
+  logInformation: number;
 }
 
-export function createConcentrated(count: number, regressors: number, ridge: Float64Array): ConcentratedSpace {
+export function createConcentrated(count: number, ridge: Float64Array, unknowns = 0): ConcentratedSpace {
+  const k = ridge.length;
   const ridged = ridge.reduce((total, value) => total + (value > 0 ? 1 : 0), 0);
   return {
-    gram: new Float64Array(regressors * regressors),
-    effects: new Float64Array(regressors),
+    unknowns,
+    gram: new Float64Array(k * k),
+    effects: new Float64Array(k),
     ridge,
     residuals: new Float64Array(count + ridged),
     sumOfSquares: 0,
+    logInformation: 0,
   };
 }
 
 /** Fills effects, residuals and their sum of squares. False where the regressors' columns are not independent. */
 export function concentrate(space: ConcentratedSpace, innovations: Innovations): boolean {
-  const { gram, effects, ridge, residuals } = space;
-  const { columns, count } = innovations;
+  const { gram, effects, ridge, residuals, unknowns } = space;
+  const { columns, starts, count } = innovations;
   const k = effects.length;
-  const errors = columns[0];
+  residuals.set(columns[0]);
   if (k > 0) {
     for (let i = 0; i < k; i++) {
       const a = columns[i + 1];
       for (let j = 0; j <= i; j++) {
-        const b = columns[j + 1];
-        let sum = i === j ? ridge[i] : 0;
-        for (let t = 0; t < count; t++) sum += a[t] * b[t];
-        gram[i * k + j] = sum;
+        const sum = product(a, columns[j + 1], Math.max(starts[i + 1], starts[j + 1]), count);
+        gram[i * k + j] = i === j ? sum + ridge[i] : sum;
       }
-      let sum = 0;
-      for (let t = 0; t < count; t++) sum += a[t] * errors[t];
-      effects[i] = sum;
+      effects[i] = product(a, columns[0], starts[i + 1], count);
     }
     if (!factorize(gram, k)) return false;
     solveFactored(gram, k, effects);
-  }
-  let sumOfSquares = 0;
-  if (k === 0)
-    for (let t = 0; t < count; t++) {
-      const e = errors[t];
-      residuals[t] = e;
-      sumOfSquares += e * e;
-    }
-  else {
-    for (let t = 0; t < count; t++) {
-      let e = errors[t];
-      for (let i = 0; i < k; i++) e -= effects[i] * columns[i + 1][t];
-      residuals[t] = e;
-      sumOfSquares += e * e;
-    }
     let row = count;
-    for (let i = 0; i < k; i++)
-      if (ridge[i] > 0) {
-        const e = Math.sqrt(ridge[i]) * effects[i];
-        residuals[row++] = e;
-        sumOfSquares += e * e;
-      }
+    for (let i = 0; i < k; i++) {
+      const column = columns[i + 1];
+      const effect = effects[i];
+      for (let t = starts[i + 1]; t < count; t++) residuals[t] -= effect * column[t];
+      if (ridge[i] > 0) residuals[row++] = Math.sqrt(ridge[i]) * effect;
+    }
+    space.logInformation = 0;
+    for (let i = 0; i < unknowns; i++) space.logInformation += 2 * Math.log(gram[i * k + i]);
   }
-  space.sumOfSquares = sumOfSquares;
-  return Number.isFinite(sumOfSquares);
+  space.sumOfSquares = product(residuals, residuals, 0, residuals.length);
+  return Number.isFinite(space.sumOfSquares);
+}
+
+/** Σ aₜbₜ over from ≤ t < to. */
+export function product(a: Float64Array, b: Float64Array, from: number, to: number): number {
+  let sum = 0;
+  for (let t = from; t < to; t++) sum += a[t] * b[t];
+  return sum;
 }
 
 /** Cholesky factor of a symmetric k by k matrix, in place in the lower triangle. False where it is not positive. */
@@ -103,8 +105,36 @@ export function solveFactored(factor: Float64Array, k: number, b: Float64Array):
   }
 }
 
-/** Minus the log-likelihood, effects and variance at their best: n/2·(log 2π + 1 + log S/n) + ½ Σ log f. */
-export function minusLogLikelihood(innovations: Innovations, sumOfSquares: number): number {
-  const n = innovations.count;
-  return 0.5 * (n * (Math.log(2 * Math.PI) + 1 + Math.log(sumOfSquares / n)) + innovations.logDeterminant);
+/**
+ * Minus the log-likelihood, effects and variance at their best: n/2·(log 2π + 1 + log S/n) + ½ Σ log f, n the errors
+ * less the unknown figures.
+ */
+export function minusLogLikelihood(innovations: Innovations, space: ConcentratedSpace): number {
+  const n = innovations.count - space.unknowns;
+  const logDeterminant = innovations.logDeterminant + space.logInformation;
+  return 0.5 * (n * (Math.log(2 * Math.PI) + 1 + Math.log(space.sumOfSquares / n)) + logDeterminant);
+}
+
+/** The log-likelihood at effects and variance as they stand, which a ridge has moved off their best. */
+export function logLikelihoodAt(innovations: Innovations, space: ConcentratedSpace): number {
+  const { count } = innovations;
+  const { residuals, sumOfSquares } = space;
+  const ridged = product(residuals, residuals, count, residuals.length);
+  return -minusLogLikelihood(innovations, space) + (0.5 * (count - space.unknowns) * ridged) / sumOfSquares;
+}
+
+/** The effects' covariance with the polynomials held fixed, for the regressors that are no unknown figures. */
+export function effectsCovariance(space: ConcentratedSpace, observations: number): Float64Array {
+  const { gram, effects, unknowns, sumOfSquares } = space;
+  const k = effects.length;
+  const asked = k - unknowns;
+  const covariance = new Float64Array(asked * asked);
+  const unit = new Float64Array(k);
+  for (let j = 0; j < asked; j++) {
+    unit.fill(0);
+    unit[unknowns + j] = sumOfSquares / observations;
+    solveFactored(gram, k, unit);
+    covariance.set(unit.subarray(unknowns), j * asked);
+  }
+  return covariance;
 }

@@ -12,7 +12,8 @@ export interface Prepared {
   readonly columns: readonly Float64Array[];
   /** The same differenced and without gaps: good enough to start a search from, and exact where there are none. */
   readonly startColumns: readonly Float64Array[];
-  readonly hasGaps: boolean;
+  /** Where figures are missing. */
+  readonly gaps: readonly number[];
   /** The series' unit. */
   readonly unit: number;
   /** The regression columns' units. */
@@ -24,12 +25,16 @@ export interface Prepared {
 /** Differences smaller than this share of the figures are rounding, not variation. */
 const ROUNDING = 1e-13;
 
-/** Throws an Error where nothing varies or a regressor can't be told from the others. */
+/**
+ * `ridge`: one for each regression column; the effect of a column that has one stays in the series, since the ridge is
+ * on the whole of it. Throws an Error where nothing varies or a regressor can't be told from the others.
+ */
 export function prepare(
   form: Form,
   series: Float64Array,
   constant: boolean,
   regressors: readonly Regressor[],
+  ridge: Float64Array,
 ): Prepared {
   const n = series.length;
   const { d, D, m } = form;
@@ -37,8 +42,8 @@ export function prepare(
   const first = series.find((y) => !Number.isNaN(y)) ?? Number.NaN;
   if (series.every((y) => Number.isNaN(y) || y === first))
     throw new Error(`every figure is the same (on the model's scale ${first}): there is nothing to model`);
-  const hasGaps = series.some(Number.isNaN);
-  const filled = hasGaps ? interpolated(series) : series;
+  const gaps = [...series.keys()].filter((t) => Number.isNaN(series[t]));
+  const filled = gaps.length > 0 ? interpolated(series) : series;
 
   const raw = regressionColumns(form, constant, regressors, n);
   const names = [...(constant ? ['constant'] : []), ...regressors.map(({ name }) => name)];
@@ -55,8 +60,14 @@ export function prepare(
   const scaled = differenced.map((column, i) => column.map((x) => x / unitOf[i]));
   const target = difference(filled, d, D, m);
 
-  const start = createConcentrated(target.length, raw.length, new Float64Array(raw.length));
-  const innovations = { count: target.length, columns: [target, ...scaled], root: target, logDeterminant: 0 };
+  const start = createConcentrated(target.length, new Float64Array(raw.length));
+  const innovations = {
+    count: target.length,
+    columns: [target, ...scaled],
+    starts: new Int32Array(1 + scaled.length),
+    root: target,
+    logDeterminant: 0,
+  };
   if (!concentrate(start, innovations))
     throw new Error(`regressors ${names.map((name) => `"${name}"`).join(', ')} can't be told apart: leave one out`);
   const unit = rootMeanSquare(start.residuals);
@@ -64,18 +75,20 @@ export function prepare(
     throw new Error(`nothing is left to model: the differences of ${formText(form)} follow a fixed rule exactly`);
 
   const columns = raw.map((column, i) => column.map((x) => x / unitOf[i]));
-  const rest = series.map((y, t) => {
-    let value = y;
-    for (let i = 0; i < columns.length; i++) value -= start.effects[i] * columns[i][t];
-    return value / unit;
-  });
+  const before = Array.from(start.effects, (effect, i) => (ridge[i] > 0 ? 0 : effect));
+  const without = (values: Float64Array, regression: readonly Float64Array[]) =>
+    values.map((value, t) => {
+      let rest = value;
+      for (let i = 0; i < before.length; i++) rest -= before[i] * regression[i][t];
+      return rest / unit;
+    });
   return {
-    columns: [rest, ...columns],
-    startColumns: [start.residuals.map((e) => e / unit), ...scaled],
-    hasGaps,
+    columns: [without(series, columns), ...columns],
+    startColumns: [without(target, scaled), ...scaled],
+    gaps,
     unit,
     unitOf,
-    before: Array.from(start.effects, (effect, i) => effect / unitOf[i]),
+    before: before.map((effect, i) => effect / unitOf[i]),
   };
 }
 

@@ -22,10 +22,11 @@ export function startValues(arma: Arma, data: readonly Float64Array[]): { z: Flo
   const innovations: Innovations = {
     count,
     columns: data.map(() => new Float64Array(count)),
+    starts: new Int32Array(data.length),
     root: new Float64Array(0),
     logDeterminant: 0,
   };
-  const concentrated = createConcentrated(count, regressors, new Float64Array(regressors));
+  const concentrated = createConcentrated(count, new Float64Array(regressors));
   const found = minimize(
     {
       parameters: z.length,
