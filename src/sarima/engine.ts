@@ -27,7 +27,8 @@ export function createEngine(form: Form, prepared: Prepared, penalty: Penalty): 
   const arma = createArma(form);
   const { gaps, columns, startColumns } = prepared;
   const lost = columns[0].length - startColumns[0].length;
-  if (gaps.length * (arma.r + gaps.length / 2) > (arma.r + lost) ** 2) return createFilterEngine(form, prepared, penalty);
+  if (gaps.length * (arma.r + gaps.length / 2) > (arma.r + lost) ** 2)
+    return createFilterEngine(form, prepared, penalty);
   const unknowns = gaps.map((t) => {
     const indicator = new Float64Array(columns[0].length);
     indicator[t] = 1;

@@ -14,7 +14,7 @@ import { estimateCovariance } from './information.js';
 import type { Minimum } from './minimize.js';
 import { effectsCovariance, logLikelihoodAt } from './objective.js';
 import { type Prepared, prepare } from './prepare.js';
-import { defaultPriors, noPenalty, type Penalty, penaltyOf, type Priors } from './priors.js';
+import { defaultPriors, noPenalty, type Penalty, type Priors, penaltyOf } from './priors.js';
 import { checkRegressors, type Regressor } from './regressors.js';
 import { nearlyCancels, nearUnitRoots } from './roots.js';
 import { parseScale, toScale } from './scale.js';

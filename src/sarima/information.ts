@@ -75,8 +75,7 @@ export function estimateCovariance(profile: Profile, at: Float64Array): Informat
   if (ofZ === null) return { covariance: null, effective: at.length + k };
   let effective = at.length + k;
   for (let i = 0; i < f; i++)
-    for (let j = 0; j < f; j++)
-      effective -= ofZ[i * f + j] * product(pull[i], pull[j], 0, penalties.length);
+    for (let j = 0; j < f; j++) effective -= ofZ[i * f + j] * product(pull[i], pull[j], 0, penalties.length);
   const variance = profile.variance();
   for (let i = 0; i < k; i++) effective -= (ridge[i] * ofEffects[i * k + i]) / variance;
 

@@ -4,9 +4,11 @@
  * Both likelihoods of a model have this shape (Mélard 1984 uses it too), so the search is Levenberg's and Marquardt's
  * (Marquardt, "An algorithm for least-squares estimation of nonlinear parameters", Journal of the Society for
  * Industrial and Applied Mathematics 11, 1963): one forward difference a parameter gives the gradient and a Hessian that
- * is never indefinite.
+ * is never indefinite. What that Hessian lacks, the rows' own curvature, is learned from how the gradient changes
+ * (Dennis, Gay & Welsch, "An adaptive nonlinear least-squares algorithm", ACM Transactions on Mathematical Software 7,
+ * 1981): it is what makes the last steps short near the unit circle.
  */
-import { factorize, solveFactored } from './objective.js';
+import { factorize, product, solveFactored } from './objective.js';
 import { OUTERMOST } from './partial.js';
 
 export interface Problem {
@@ -33,6 +35,9 @@ const FORWARD = 1e-6;
 const LONGEST_STEP = 2;
 const MOST_ITERATIONS = 100;
 
+/** A number this far out, and going further, is probably bound for the unit circle. */
+const FAR = 2;
+
 /** A search that rounding brings to a halt has settled where the next step promises less log-likelihood than this. */
 const NEGLIGIBLE = 1e-4;
 
@@ -54,6 +59,9 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
   const step = new Float64Array(k);
   const trial = new Float64Array(k);
   const shifted = new Float64Array(k);
+  const curvature = createCurvature(k);
+  const full = new Float64Array(k * k);
+  const leapt = new Uint8Array(k);
   let damping = 1e-3;
   let promised = Number.POSITIVE_INFINITY;
 
@@ -69,18 +77,25 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
       for (let i = 0; i < penalties.length; i++) penaltySlopes[j][i] = (penalties[i] - basePenalties[i]) / h;
     }
     evaluations += k;
-    const perSquare = weight / dot(base, base);
+    const perSquare = weight / product(base, base, 0, rows.length);
     for (let i = 0; i < k; i++) {
-      gradient[i] = perSquare * dot(slopes[i], base) + dot(penaltySlopes[i], basePenalties);
+      gradient[i] =
+        perSquare * product(slopes[i], base, 0, rows.length) +
+        product(penaltySlopes[i], basePenalties, 0, penalties.length);
       for (let j = 0; j <= i; j++)
         hessian[i * k + j] = hessian[j * k + i] =
-          perSquare * dot(slopes[i], slopes[j]) + dot(penaltySlopes[i], penaltySlopes[j]);
+          perSquare * product(slopes[i], slopes[j], 0, rows.length) +
+          product(penaltySlopes[i], penaltySlopes[j], 0, penalties.length);
     }
 
-    promised = dampedStep(z, gradient, hessian, 0, factor, step);
+    learnCurvature(curvature, z, gradient, hessian);
+    for (let i = 0; i < k * k; i++) full[i] = hessian[i] + curvature.missing[i];
+    const isPositive = dampedStep(z, gradient, full, 0, factor, step) > 0;
+    const used = isPositive ? full : hessian;
+    promised = dampedStep(z, gradient, used, 0, factor, step);
     if (promised < tolerance) return { z, value, evaluations, settled: true };
     for (;;) {
-      const predicted = dampedStep(z, gradient, hessian, damping, factor, step);
+      const predicted = dampedStep(z, gradient, used, damping, factor, step);
       for (let j = 0; j < k; j++) trial[j] = withinBounds(z[j] + step[j]);
       const reached = evaluate(trial);
       evaluations++;
@@ -91,6 +106,22 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
         value = reached;
         base.set(rows);
         basePenalties.set(penalties);
+        const far = step.findIndex((by, j) => !leapt[j] && by * z[j] > 0 && Math.abs(z[j]) > FAR);
+        if (far >= 0) {
+          // On its way to the unit circle: there at once, rather than by ever smaller gains.
+          leapt[far] = 1;
+          trial.set(z);
+          trial[far] = Math.sign(z[far]) * OUTERMOST;
+          const beyond = evaluate(trial);
+          evaluations++;
+          if (beyond <= value) {
+            z.set(trial);
+            value = beyond;
+            base.set(rows);
+            basePenalties.set(penalties);
+            curvature.known = false;
+          }
+        }
         break;
       }
       damping = Math.max(damping, 1e-4) * 6;
@@ -98,6 +129,45 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
     }
   }
   return { z, value, evaluations, settled: promised < NEGLIGIBLE };
+}
+
+interface Curvature {
+  /** The part of the Hessian that products of first derivatives do not hold. */
+  readonly missing: Float64Array;
+  readonly z: Float64Array;
+  readonly gradient: Float64Array;
+  known: boolean;
+}
+
+function createCurvature(k: number): Curvature {
+  return { missing: new Float64Array(k * k), z: new Float64Array(k), gradient: new Float64Array(k), known: false };
+}
+
+/** Takes in the gradient at a new z, so that the full Hessian sends the step there to the gradient's change. */
+function learnCurvature(curvature: Curvature, z: Float64Array, gradient: Float64Array, hessian: Float64Array): void {
+  const { missing, z: last, gradient: lastGradient } = curvature;
+  const k = z.length;
+  if (curvature.known) {
+    const s = z.map((value, i) => value - last[i]);
+    const y = gradient.map((value, i) => value - lastGradient[i]);
+    const wanted = y.map((value, i) => value - product(hessian.subarray(i * k, (i + 1) * k), s, 0, k));
+    const along = product(y, s, 0, k);
+    if (along > 0) {
+      const had = () => s.map((_, i) => product(missing.subarray(i * k, (i + 1) * k), s, 0, k));
+      // Sizing: what was learned elsewhere is believed no further than this step bears out.
+      const before = Math.abs(product(s, had(), 0, k));
+      const share = before === 0 ? 1 : Math.min(1, Math.abs(product(s, wanted, 0, k)) / before);
+      for (let i = 0; i < k * k; i++) missing[i] *= share;
+      const rest = had().map((value, i) => wanted[i] - value);
+      const excess = product(rest, s, 0, k) / along ** 2;
+      for (let i = 0; i < k; i++)
+        for (let j = 0; j < k; j++)
+          missing[i * k + j] += (rest[i] * y[j] + y[i] * rest[j]) / along - excess * y[i] * y[j];
+    }
+  }
+  last.set(z);
+  lastGradient.set(gradient);
+  curvature.known = true;
 }
 
 /**
@@ -143,10 +213,4 @@ function isHeld(z: number, slope: number): boolean {
 
 function withinBounds(z: number): number {
   return Math.min(Math.max(z, -OUTERMOST), OUTERMOST);
-}
-
-function dot(a: Float64Array, b: Float64Array): number {
-  let sum = 0;
-  for (let i = 0; i < a.length; i++) sum += a[i] * b[i];
-  return sum;
 }

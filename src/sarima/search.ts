@@ -1,41 +1,57 @@
 /** The search for the likelihood's highest summit, from as many starts as it is likely to have summits. */
 import type { Arma } from './arma.js';
 import { type Minimum, minimize, type Problem } from './minimize.js';
-import { firstGuess, guess, startValues } from './start.js';
+import { startValues } from './start.js';
 
 /** An unfinished search promises less than this much more log-likelihood when it stops. */
 const TOLERANCE = 1e-8;
 /** A further start is followed this far before it is asked whether it leads higher. */
-const ROUGHLY = 1e-2;
+const ROUGHLY = 0.03;
+/** Closer than this in every partial autocorrelation, a summit is one that is known. */
+const SAME = 0.02;
 
-/** Near the unit circle: partial autocorrelations beyond 0.96. */
-const SUSPICIOUS = 2;
-/** A first partial autocorrelation of 0.9. */
-const PERSISTENT = 1.5;
-
-/** `start`: where to begin and stay, or the columns that conditional least squares makes a first start from. */
+/** `startColumns`: what conditional least squares makes a first start from. */
 export function search(arma: Arma, problem: Problem, startColumns: readonly Float64Array[]): Minimum {
   let best = minimize(problem, startValues(arma, startColumns).z, TOLERANCE);
   let { evaluations } = best;
-  for (const start of furtherStarts(arma, best)) {
+  for (const start of furtherStarts(arma)) {
     const rough = minimize(problem, start, ROUGHLY);
     evaluations += rough.evaluations;
-    if (rough.value > best.value - 2 * ROUGHLY && Number.isFinite(best.value)) continue;
+    if (Number.isFinite(best.value) && (rough.value > best.value + ROUGHLY || isSame(rough.z, best.z))) continue;
     const found = minimize(problem, rough.z, TOLERANCE);
     evaluations += found.evaluations;
-    best = found;
+    if (!(found.value >= best.value)) best = found;
   }
   return { ...best, evaluations };
 }
 
-/** A likelihood with both sides, or with a seasonal autoregression, often has a second summit. */
-function furtherStarts(arma: Arma, { settled, z }: Minimum): Float64Array[] {
-  const { p, q, P } = arma.form;
-  const isPlain = settled && z.every((value) => Math.abs(value) < SUSPICIOUS);
+/**
+ * Where a second summit is likely: an autoregressive and a moving-average root that nearly undo each other, at one of
+ * several frequencies, as a real root or a pair; and the same in the seasonal polynomials.
+ */
+function furtherStarts(arma: Arma): Float64Array[] {
+  const { p, q, P, Q } = arma.form;
   const isMixed = p > 0 && q > 0;
-  return [
-    ...(isPlain ? [] : [firstGuess(arma)]),
-    ...(isMixed || P > 0 ? [guess(arma, { ar: PERSISTENT, ma: -PERSISTENT / 2 })] : []),
-    ...(isMixed ? [guess(arma, { ar: -PERSISTENT / 3, ma: PERSISTENT / 3 })] : []),
-  ];
+  const hasPair = p > 1 && q > 1;
+  const place = (...partials: (readonly number[])[]) => {
+    const z = new Float64Array(arma.coefficients.length);
+    arma.blocks.forEach(({ from, order }, block) => {
+      for (let i = 0; i < Math.min(order, partials[block].length); i++) z[from + i] = Math.atanh(partials[block][i]);
+    });
+    return z;
+  };
+  const starts = isMixed
+    ? [place([0.9], [-0.7], [0.1], [-0.5]), place([-0.5], [0.4], [0.1], [-0.5]), place([-0.8], [0.95], [0.1], [-0.5])]
+    : p > 1 || q > 1 || P + Q > 0
+      ? [place([0.5], [-0.6], [0.1], [-0.6]), place([-0.3], [0.4], [-0.3], [0.2])]
+      : [];
+  if (hasPair) for (const c of [0.9, 0.5, 0, -0.5, -0.9]) starts.push(place([c, -0.6], [-c, 0.9], [0.1], [-0.5]));
+  if (q > 1 && p === 0) starts.push(place([], [-0.5, -0.6], [0.1], [-0.1]));
+  if (P > 0) starts.push(place([0.5], [-0.6], [0.9], [-0.8]));
+  if (P > 0 && Q > 0) starts.push(place([0.5], [-0.6], [-0.9], [0.8]));
+  return starts;
+}
+
+function isSame(a: Float64Array, b: Float64Array): boolean {
+  return a.every((value, i) => Math.abs(Math.tanh(value) - Math.tanh(b[i])) < SAME);
 }

@@ -105,7 +105,12 @@ const sum = (numbers) => numbers.reduce((a, b) => a + b, 0);
 const rows =
   options.series.length === 0
     ? generated()
-    : options.series.flatMap((file) => readFileSync(file, 'utf8').trim().split('\n').map((line) => JSON.parse(line)));
+    : options.series.flatMap((file) =>
+        readFileSync(file, 'utf8')
+          .trim()
+          .split('\n')
+          .map((line) => JSON.parse(line)),
+      );
 const cases = drawCases(rows, Number(options.fits));
 let results = fitAll(cases);
 for (let pass = 0; pass < PASSES; pass++)
@@ -113,9 +118,7 @@ for (let pass = 0; pass < PASSES; pass++)
 const reference = fitWithR(cases);
 
 const table = [];
-const groups = [...FORMS, null].flatMap((brackets) =>
-  [false, true, null].map((gaps) => ({ brackets, gaps })),
-);
+const groups = [...FORMS, null].flatMap((brackets) => [false, true, null].map((gaps) => ({ brackets, gaps })));
 for (const { brackets, gaps } of groups) {
   if ((brackets === null) !== (gaps === null)) continue;
   const at = [...cases.keys()].filter(
@@ -137,7 +140,11 @@ for (const { brackets, gaps } of groups) {
     'ms a fit': (ms / at.length).toFixed(3),
     ...(reference === null
       ? {}
-      : { 'R, ms a fit': (theirs / at.length).toFixed(2), 'times as fast': (theirs / ms).toFixed(1), 'below R': below }),
+      : {
+          'R, ms a fit': (theirs / at.length).toFixed(2),
+          'times as fast': (theirs / ms).toFixed(1),
+          'below R': below,
+        }),
   });
 }
 console.table(table);
@@ -147,6 +154,16 @@ else if (options.list)
     const short = reference[i].logLikelihood - results[i].logLikelihood;
     if (short > 0.01)
       console.log(
-        JSON.stringify({ case: i, id, form: `${brackets}${m}`, scale, gaps, short, orders: form, figures: cases[i].figures, theirs: reference[i].coefficients }),
+        JSON.stringify({
+          case: i,
+          id,
+          form: `${brackets}${m}`,
+          scale,
+          gaps,
+          short,
+          orders: form,
+          figures: cases[i].figures,
+          theirs: reference[i].coefficients,
+        }),
       );
   }

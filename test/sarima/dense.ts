@@ -46,7 +46,7 @@ export function denseAutocovariances(form: Form, at: Coefficients, count: number
   for (let round = 0; round < 60; round++) {
     const added = matrixProduct(matrixProduct(T, P), transpose(T));
     P = P.map((row, i) => row.map((x, j) => x + added[i][j]));
-    if (added[0][0] < 1e-18 * P[0][0]) break;
+    if (added.every((row, i) => row[i] <= 1e-18 * P[i][i])) break;
     T = matrixProduct(T, T);
   }
   let column = P.map((row) => [row[0]]);
