@@ -4,12 +4,14 @@
  */
 import { type Arma, createArma, expand } from './arma.js';
 import { difference } from './difference.js';
+import { diffuseStart } from './diffuse.js';
 import { createFilter, type FilterSpace, filterErrors } from './filter.js';
-import type { Form } from './form.js';
+import { type Form, formText } from './form.js';
 import { createLikelihood, type Innovations, predictionErrors } from './likelihood.js';
 import type { Problem } from './minimize.js';
 import { type ConcentratedSpace, concentrate, createConcentrated, minusLogLikelihood } from './objective.js';
 import { toCoefficients } from './partial.js';
+import { differenceWeights } from './polynomial.js';
 import { differencedColumns, type Prepared } from './prepare.js';
 import type { Penalty } from './priors.js';
 
@@ -22,12 +24,19 @@ export interface Engine {
   readonly problem: Problem;
 }
 
-/** The engine for searching: gaps as unknown figures of the fast recursion while that is the shorter way. */
+/**
+ * The engine for searching: gaps as unknown figures of the fast recursion while that is the shorter way. Throws an Error
+ * where the gaps leave a part of the season unknown.
+ */
 export function createEngine(form: Form, prepared: Prepared, penalty: Penalty): Engine {
   const arma = createArma(form);
   const { gaps, columns, startColumns } = prepared;
-  const lost = columns[0].length - startColumns[0].length;
-  if (gaps.length * (arma.r + gaps.length / 2) > (arma.r + lost) ** 2)
+  const delta = differenceWeights(form);
+  if (gaps.length > 0 && !diffuseStart(columns[0], delta).settled)
+    throw new Error(
+      `model ${formText(form)}: the figures leave a part of the season unknown; every position of the season needs a figure`,
+    );
+  if (gaps.length * (arma.r + gaps.length / 2) > (arma.r + delta.length) ** 2)
     return createFilterEngine(form, prepared, penalty);
   const unknowns = gaps.map((t) => {
     const indicator = new Float64Array(columns[0].length);

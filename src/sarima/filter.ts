@@ -13,7 +13,7 @@ import type { Arma } from './arma.js';
 import { type AutocovarianceSpace, createAutocovarianceSpace, firstColumn } from './autocovariance.js';
 import { DIFFUSE, type DiffuseStart, diffuseStart, MISSING, ORDINARY } from './diffuse.js';
 import type { Innovations } from './likelihood.js';
-import { differencePolynomial } from './polynomial.js';
+import { differenceWeights } from './polynomial.js';
 
 export interface FilterSpace extends Innovations {
   readonly arma: Arma;
@@ -55,8 +55,7 @@ const SETTLED = 1e-12;
 
 /** Room for a run of the filter. With `traced` every period from the first on is filtered and kept. */
 export function createFilter(arma: Arma, data: readonly Float64Array[], traced = false): FilterSpace {
-  const { d, D, m } = arma.form;
-  const delta = Float64Array.from(differencePolynomial(d, D, m).slice(1), (weight) => -weight);
+  const delta = differenceWeights(arma.form);
   const n = data[0].length;
   const s = delta.length;
   const size = arma.r + s;

@@ -106,7 +106,7 @@ export function fitModel(values: ArrayLike<number>, options: FitOptions): Fit {
   const penalty = priors === null ? noPenalty(columns) : penaltyOf(form, priors, constant, columns);
   const prepared = prepare(form, series, constant, regressors, penalty.ridge);
   const engine = createEngine(form, prepared, penalty);
-  const found = search(engine.arma, engine.problem, prepared.startColumns);
+  const found = search(engine.arma, engine.problem, prepared.startColumns, penalty.centre);
   return report(asked, prepared, penalty, engine, found);
 }
 

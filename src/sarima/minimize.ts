@@ -40,6 +40,7 @@ const FAR = 2;
 
 /** A search that rounding brings to a halt has settled where the next step promises less log-likelihood than this. */
 const NEGLIGIBLE = 1e-4;
+const PROBE = 0.01;
 
 /** Searches from `start` until less than `tolerance` is to be gained. */
 export function minimize(problem: Problem, start: Float64Array, tolerance: number): Minimum {
@@ -65,7 +66,7 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
   let damping = 1e-3;
   let promised = Number.POSITIVE_INFINITY;
 
-  for (let iteration = 0; iteration < MOST_ITERATIONS; iteration++) {
+  search: for (let iteration = 0; iteration < MOST_ITERATIONS; iteration++) {
     shifted.set(z);
     for (let j = 0; j < k; j++) {
       const h = z[j] > 0 ? -FORWARD : FORWARD;
@@ -125,10 +126,26 @@ export function minimize(problem: Problem, start: Float64Array, tolerance: numbe
         break;
       }
       damping = Math.max(damping, 1e-4) * 6;
-      if (damping > 1e9) return { z, value, evaluations, settled: promised < NEGLIGIBLE };
+      if (damping > 1e9) break search;
     }
   }
-  return { z, value, evaluations, settled: promised < NEGLIGIBLE };
+  const settled = promised < NEGLIGIBLE || isLowest(problem, z, value);
+  return { z, value, evaluations, settled };
+}
+
+/** Where rounding swamps the slopes: whether a small step in any direction leads lower by more than is negligible. */
+function isLowest({ evaluate }: Problem, z: Float64Array, value: number): boolean {
+  const trial = Float64Array.from(z);
+  return z.every((at, j) => {
+    const lowest = Math.min(
+      ...[-PROBE, PROBE].map((by) => {
+        trial[j] = withinBounds(at + by);
+        return evaluate(trial);
+      }),
+    );
+    trial[j] = at;
+    return lowest > value - NEGLIGIBLE;
+  });
 }
 
 interface Curvature {

@@ -69,6 +69,7 @@ export function fromCoefficients(blocks: readonly Block[], coefficients: ArrayLi
 
 const LARGEST_PARTIAL = Math.tanh(OUTERMOST);
 
-function clampPartial(partial: number): number {
+/** Held off the unit circle, as z is. */
+export function clampPartial(partial: number): number {
   return Math.min(Math.max(partial, -LARGEST_PARTIAL), LARGEST_PARTIAL);
 }

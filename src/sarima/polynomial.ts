@@ -18,6 +18,19 @@ export function differencePolynomial(d: number, D: number, m: number): number[] 
   return polynomial;
 }
 
+/** δ in yₜ = ∇ᵈ∇ₘᴰyₜ + Σ δₖ yₜ₋ₖ, δ₁ first. */
+export function differenceWeights({
+  d,
+  D,
+  m,
+}: {
+  readonly d: number;
+  readonly D: number;
+  readonly m: number;
+}): Float64Array {
+  return Float64Array.from(differencePolynomial(d, D, m).slice(1), (weight) => -weight);
+}
+
 /** 1 + sign·Σ coefficientsⱼ B^(j·spacing): φ(B) with sign −1, θ(B) with sign 1, the seasonal ones with spacing m. */
 export function polynomial(coefficients: ArrayLike<number>, sign: 1 | -1, spacing = 1): number[] {
   const result = new Array<number>(coefficients.length * spacing + 1).fill(0);

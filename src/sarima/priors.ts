@@ -6,7 +6,7 @@
  * Litterman, "Forecasting with Bayesian vector autoregressions", Journal of Business & Economic Statistics 4 (1986).
  */
 import { type Form, polynomialCoefficients } from './form.js';
-import { blocksOf } from './partial.js';
+import { blocksOf, clampPartial, fromCoefficients } from './partial.js';
 
 export interface Prior {
   readonly centre: number;
@@ -31,6 +31,8 @@ export interface Penalty {
   readonly fill: (rows: Float64Array, z: Float64Array, coefficients: Float64Array) => number;
   /** The ridge on each regression column, the constant's first. */
   readonly ridge: Float64Array;
+  /** z at the centres; null without priors. */
+  readonly centre: Float64Array | null;
 }
 
 /** No centre, whatever the data say: where nothing else is stated. */
@@ -46,7 +48,7 @@ export function coefficientNames(form: Form): string[] {
 
 /** No penalty at all. `columns`: the constant and the regressors. */
 export function noPenalty(columns: number): Penalty {
-  return { rows: 0, fill: () => 0, ridge: new Float64Array(columns) };
+  return { rows: 0, fill: () => 0, ridge: new Float64Array(columns), centre: null };
 }
 
 /** Throws an Error where a prior is none or belongs to no coefficient of the form. */
@@ -67,6 +69,7 @@ export function penaltyOf(form: Form, priors: Priors, constant: boolean, columns
   return {
     rows: 2 * k,
     ridge,
+    centre: centreOf(form, stated),
     fill: (rows, z, coefficients) => {
       let sum = 0;
       for (let i = 0; i < k; i++) {
@@ -79,6 +82,23 @@ export function penaltyOf(form: Form, priors: Priors, constant: boolean, columns
       return sum / 2;
     },
   };
+}
+
+/** A little off zero, where an autoregressive and a moving-average part could not be told apart. */
+const OFF = 0.01;
+
+function centreOf(form: Form, stated: readonly Prior[]): Float64Array {
+  const blocks = blocksOf(form);
+  const z = fromCoefficients(
+    blocks,
+    stated.map(({ centre, on }) => (on === 'coefficient' ? centre : 0)),
+  );
+  for (const { from, order, sign } of blocks)
+    for (let i = from; i < from + order; i++) {
+      if (stated[i].on === 'partial') z[i] = Math.atanh(clampPartial(stated[i].centre));
+      if (z[i] === 0) z[i] = sign * OFF;
+    }
+  return z;
 }
 
 /**
