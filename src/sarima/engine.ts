@@ -38,14 +38,17 @@ export function createEngine(form: Form, prepared: Prepared, penalty: Penalty): 
     );
   if (gaps.length * (arma.r + gaps.length / 2) > (arma.r + delta.length) ** 2)
     return createFilterEngine(form, prepared, penalty);
-  const unknowns = gaps.map((t) => {
-    const indicator = new Float64Array(columns[0].length);
-    indicator[t] = 1;
-    return difference(indicator, form.d, form.D, form.m);
-  });
+  const unknowns = gaps.map((t) => indicator(form, columns[0].length, t));
   const [series, ...regressors] = gaps.length > 0 ? startColumns : differencedColumns(form, columns);
   const space = createLikelihood(arma, [series, ...unknowns, ...regressors]);
   return engineOf(arma, space, () => predictionErrors(space), penalty, unknowns.length);
+}
+
+/** A figure's own column, differenced: 1 in its period, 0 in all others. */
+export function indicator({ d, D, m }: Form, length: number, period: number): Float64Array {
+  const column = new Float64Array(length);
+  column[period] = 1;
+  return difference(column, d, D, m);
 }
 
 /** The engine on the undifferenced series, whatever its gaps; its errors are those of the figures themselves. */
@@ -59,16 +62,32 @@ export function createFilterEngine(
   return { ...engineOf(arma, filter, () => filterErrors(filter), penalty, 0), filter };
 }
 
+/**
+ * The engine for figures that are known as a distribution only: `startColumns` with the means in their place, and
+ * beside them the directions of their spread, differenced; what is minimized is the expected value.
+ */
+export function createExpectedEngine(
+  form: Form,
+  startColumns: readonly Float64Array[],
+  spreads: readonly Float64Array[],
+  penalty: Penalty,
+): Engine {
+  const arma = createArma(form);
+  const space = createLikelihood(arma, [...startColumns, ...spreads]);
+  return engineOf(arma, space, () => predictionErrors(space), penalty, 0, spreads.length);
+}
+
 function engineOf(
   arma: Arma,
   innovations: Innovations,
   run: () => boolean,
   penalty: Penalty,
   unknowns: number,
+  spreads = 0,
 ): Engine {
-  const ridge = new Float64Array(innovations.columns.length - 1);
+  const ridge = new Float64Array(innovations.columns.length - 1 - spreads);
   ridge.set(penalty.ridge, unknowns);
-  const concentrated = createConcentrated(innovations.count, ridge, unknowns);
+  const concentrated = createConcentrated(innovations.count, ridge, unknowns, spreads);
   const observations = innovations.count - unknowns;
   const rows = new Float64Array(concentrated.residuals.length);
   const penalties = new Float64Array(penalty.rows);

@@ -6,38 +6,23 @@
  * Signs as in Box, Jenkins, Reinsel & Ljung, "Time Series Analysis", 5th ed. 2015, but with plus signs on the
  * moving-average side.
  */
+import { type Asked, checkEnough, type FitOptions, type FittedBy, normalize } from './asked.js';
+import { type Demand, fitDemand } from './censored.js';
 import { MISSING, ORDINARY } from './diffuse.js';
 import { createEngine, createFilterEngine, type Engine } from './engine.js';
 import type { FilterSpace } from './filter.js';
-import { type Form, formText, lostToDifferencing, parseForm, polynomialCoefficients } from './form.js';
+import { type Form, formText } from './form.js';
 import { estimateCovariance } from './information.js';
 import type { Minimum } from './minimize.js';
 import { effectsCovariance, logLikelihoodAt } from './objective.js';
-import { type Prepared, prepare } from './prepare.js';
-import { defaultPriors, noPenalty, type Penalty, type Priors, penaltyOf } from './priors.js';
-import { checkRegressors, type Regressor } from './regressors.js';
+import { type Prepared, prepare, withoutFigures, withSeries } from './prepare.js';
+import { noPenalty, type Penalty, type Priors, penaltyOf } from './priors.js';
 import { nearlyCancels, nearUnitRoots } from './roots.js';
-import { parseScale, toScale } from './scale.js';
+import { toScale } from './scale.js';
 import { search } from './search.js';
 
+export type { FitOptions, FittedBy } from './asked.js';
 export type { Prior, Priors } from './priors.js';
-export type FittedBy = 'maximum-likelihood' | 'shrunk';
-
-export interface FitOptions {
-  readonly form: string | Form;
-  /** `plain` (unless given), `log`, or `box-cox λ`. */
-  readonly scale?: string;
-  /** Whether the differenced series has a mean of its own; unless given, where nothing is differenced. */
-  readonly constant?: boolean;
-  readonly fittedBy?: FittedBy;
-  /** What `shrunk` pulls towards; `defaultPriors` unless given. */
-  readonly priors?: Priors | null;
-  readonly regressors?: readonly Regressor[];
-  /** Indices of periods whose figure is only a lower bound. */
-  readonly soldOut?: readonly number[];
-  /** The series' season; the form's m unless given. */
-  readonly season?: number;
-}
 
 export interface Coefficient {
   /** phi1 …, theta1 …, Phi1 …, Theta1 …, constant, then the regressors by name. */
@@ -76,7 +61,7 @@ export interface Fit {
   readonly aicc: number | null;
   /** Observations after differencing. */
   readonly observations: number;
-  /** One-step surprises on the model's scale, one a period; NaN at gaps and in the diffuse start. */
+  /** One-step surprises on the model's scale, one a period; NaN at gaps, where sold out, and in the diffuse start. */
   readonly residuals: Float64Array;
   /** The same in units of their own predicted standard deviation. */
   readonly standardizedResiduals: Float64Array;
@@ -91,6 +76,11 @@ export interface Fit {
   /** The figures as given, NaN where missing. */
   readonly values: Float64Array;
   readonly regressors: readonly { readonly name: string; readonly values: Float64Array }[];
+  /** Indices of the periods that sold out, ascending: their figures are lower bounds. */
+  readonly soldOut: readonly number[];
+  /** The demand expected in each of them given all figures, on the model's scale, and its joint covariance. */
+  readonly demand: readonly number[];
+  readonly demandCovariance: readonly (readonly number[])[];
 }
 
 /**
@@ -107,78 +97,33 @@ export function fitModel(values: ArrayLike<number>, options: FitOptions): Fit {
   const prepared = prepare(form, series, constant, regressors, penalty.ridge);
   const engine = createEngine(form, prepared, penalty);
   const found = search(engine.arma, engine.problem, prepared.startColumns, penalty.centre);
-  return report(asked, prepared, penalty, engine, found);
+  const demand = asked.soldOut.length > 0 ? fitDemand(form, prepared, asked.soldOut, penalty, found) : null;
+  return report(asked, prepared, penalty, engine, demand?.found ?? found, demand);
 }
 
-interface Asked {
-  readonly values: Float64Array;
-  readonly form: Form;
-  readonly season: number;
-  readonly scale: string;
-  readonly constant: boolean;
-  readonly fittedBy: FittedBy;
-  readonly priors: Priors | null;
-  readonly regressors: Fit['regressors'];
-}
-
-function normalize(values: ArrayLike<number>, options: FitOptions): Asked {
-  const form = typeof options.form === 'string' ? parseForm(options.form) : options.form;
-  const differences = form.d + form.D;
-  const constant = options.constant ?? differences === 0;
-  if (constant && differences > 1)
-    throw new Error(
-      `model ${formText(form)} can't have a constant: it is differenced ${differences} times; leave the constant out`,
-    );
-  const fittedBy = options.fittedBy ?? 'maximum-likelihood';
-  if ((options.soldOut ?? []).length > 0) throw new Error('periods that were sold out are not available yet');
-  const given = Float64Array.from(values);
-  const odd = given.findIndex((x) => !Number.isFinite(x) && !Number.isNaN(x));
-  if (odd >= 0) throw new Error(`figure ${odd + 1} of ${given.length} is ${given[odd]}`);
-  const scale = options.scale ?? 'plain';
-  parseScale(scale);
-  const regressors = options.regressors ?? [];
-  checkRegressors(regressors, given.length, 'the past');
-  return {
-    values: given,
-    form,
-    season: options.season ?? form.m,
-    scale,
-    constant,
-    fittedBy,
-    priors: fittedBy === 'shrunk' ? (options.priors ?? defaultPriors(form, scale, constant)) : null,
-    regressors: regressors.map(({ name, values: column }) => ({ name, values: Float64Array.from(column) })),
-  };
-}
-
-/** Shrunk, a model can do with this many differences. */
-const FEWEST_SHRUNK = 8;
-
-function checkEnough({ form, fittedBy, constant, regressors }: Asked, series: Float64Array): void {
-  const there = series.reduce((count, y) => count + (Number.isNaN(y) ? 0 : 1), 0);
-  const lost = lostToDifferencing(form);
-  const coefficients = polynomialCoefficients(form);
-  const columns = regressors.length + (constant ? 1 : 0);
-  const needed =
-    coefficients === 0
-      ? lost + 2 + columns
-      : fittedBy === 'shrunk'
-        ? lost + Math.max(FEWEST_SHRUNK, columns + 3)
-        : Math.max(2 * form.m + coefficients + lost + 3, 12, lost + coefficients + columns + 3);
-  if (there < needed)
-    throw new Error(
-      `model ${formText(form)} needs at least ${needed} figures; there are ${there}: use a shorter model`,
-    );
-}
-
-function report(asked: Asked, prepared: Prepared, penalty: Penalty, engine: Engine, found: Minimum): Fit {
-  const { form } = asked;
+function report(
+  asked: Asked,
+  prepared: Prepared,
+  penalty: Penalty,
+  engine: Engine,
+  found: Minimum,
+  demand: Demand | null,
+): Fit {
+  const { form, soldOut } = asked;
   const { p, q, P } = form;
   const { z } = found;
-  const information = informationAt(engine, prepared, z);
-  const exact = prepared.gaps.length > 0 ? createFilterEngine(form, prepared, penalty) : { ...engine, filter: null };
+  // Where demand is unknown its periods tell nothing of the estimates' spread: a little wide, never too narrow.
+  const informed = demand === null ? engine : createEngine(form, withoutFigures(prepared, soldOut), penalty);
+  const information = informationAt(informed, prepared, z);
+  const completed = demand === null ? prepared : withSeries(prepared, demand.series);
+  const exact =
+    completed.gaps.length > 0
+      ? createFilterEngine(form, completed, penalty)
+      : { ...(demand === null ? engine : createEngine(form, completed, penalty)), filter: null };
   if (!Number.isFinite(exact.problem.evaluate(z)))
     throw new Error(`model ${formText(form)} has no likelihood for these figures: use a simpler model`);
-  const { arma, concentrated, observations: n } = exact;
+  const { arma, concentrated, innovations } = exact;
+  const n = exact.observations - soldOut.length;
   const { unit, unitOf, before } = prepared;
   const effects = Array.from(concentrated.effects, (effect, i) => before[i] + (effect * unit) / unitOf[i]);
   const polynomials = {
@@ -188,8 +133,17 @@ function report(asked: Asked, prepared: Prepared, penalty: Penalty, engine: Engi
     Theta: [...arma.coefficients.subarray(p + q + P)],
   };
   const estimates = [...arma.coefficients, ...effects];
-  const logLikelihood = logLikelihoodAt(exact.innovations, concentrated) - n * Math.log(unit);
-  const sigma = Math.sqrt(concentrated.sumOfSquares / n);
+  const sigma = Math.sqrt(demand?.variance ?? concentrated.sumOfSquares / n);
+  const logLikelihood =
+    (demand === null
+      ? logLikelihoodAt(innovations, concentrated)
+      : boundedLogLikelihood(
+          createFilterEngine(form, withoutFigures(prepared, soldOut), penalty),
+          z,
+          concentrated.effects,
+          demand,
+        )) -
+    n * Math.log(unit);
   return {
     form,
     season: asked.season,
@@ -209,14 +163,45 @@ function report(asked: Asked, prepared: Prepared, penalty: Penalty, engine: Engi
     logLikelihood,
     aicc: asked.fittedBy === 'shrunk' ? null : correctedCriterion(logLikelihood, estimates.length + 1, n),
     observations: n,
-    ...residualsOf(exact, prepared, sigma),
+    ...residualsOf(exact, prepared, sigma, soldOut),
     settled: found.settled || engine.problem.parameters === 0,
     nearUnitRoots: nearUnitRoots(polynomials),
     nearlyCancels: nearlyCancels(polynomials),
     evaluations: found.evaluations,
     values: asked.values,
     regressors: asked.regressors,
+    soldOut,
+    ...demandOf(prepared, demand, soldOut),
   };
+}
+
+/** Expected demand and its covariance on the model's scale, effects included. */
+function demandOf(
+  { columns, unit, unitOf, before }: Prepared,
+  demand: Demand | null,
+  soldOut: readonly number[],
+): Pick<Fit, 'demand' | 'demandCovariance'> {
+  if (demand === null) return { demand: [], demandCovariance: [] };
+  return {
+    demand: soldOut.map((t) =>
+      before.reduce((sum, effect, i) => sum + effect * unitOf[i] * columns[1 + i][t], demand.series[t] * unit),
+    ),
+    demandCovariance: demand.covariance.map((row) => row.map((value) => value * unit * unit)),
+  };
+}
+
+/** The log-likelihood of the figures that are known, and of demand having reached every bound. */
+function boundedLogLikelihood(known: Engine, z: Float64Array, effects: Float64Array, demand: Demand): number {
+  known.problem.evaluate(z);
+  const { columns, count, logDeterminant } = known.innovations;
+  let sumOfSquares = 0;
+  for (let t = 0; t < count; t++) {
+    let e = columns[0][t];
+    for (let i = 0; i < effects.length; i++) e -= effects[i] * columns[1 + i][t];
+    sumOfSquares += e * e;
+  }
+  const { variance, logProbability } = demand;
+  return -0.5 * (count * Math.log(2 * Math.PI * variance) + sumOfSquares / variance + logDeterminant) + logProbability;
 }
 
 /** Covariance of coefficients and effects, the effects in the user's units, and what the coefficients count for. */
@@ -251,6 +236,7 @@ function residualsOf(
   { innovations, concentrated, filter }: Engine & { readonly filter: FilterSpace | null },
   { unit, columns }: Prepared,
   sigma: number,
+  soldOut: readonly number[],
 ): Pick<Fit, 'residuals' | 'standardizedResiduals'> {
   const n = columns[0].length;
   const residuals = new Float64Array(n).fill(Number.NaN);
@@ -264,6 +250,7 @@ function residualsOf(
     standardizedResiduals[t] = concentrated.residuals[row] / sigma;
     row++;
   }
+  for (const t of soldOut) residuals[t] = standardizedResiduals[t] = Number.NaN;
   return { residuals, standardizedResiduals };
 }
 

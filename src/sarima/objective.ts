@@ -18,7 +18,10 @@ export interface ConcentratedSpace {
   readonly effects: Float64Array;
   /** The ridge on each regressor's effect, in units of the innovation variance; 0 for none. */
   readonly ridge: Float64Array;
-  /** Errors with the effects taken off, then one √ridge·effect for each regressor that has a ridge. */
+  /**
+   * Errors with the effects taken off, then one √ridge·effect for each regressor that has a ridge, then the errors of
+   * the columns after the regressors: directions in which the series itself is spread.
+   */
   readonly residuals: Float64Array;
   /** Sum of squares of `residuals`. */
   sumOfSquares: number;
@@ -26,7 +29,7 @@ export interface ConcentratedSpace {
   logInformation: number;
 }
 
-export function createConcentrated(count: number, ridge: Float64Array, unknowns = 0): ConcentratedSpace {
+export function createConcentrated(count: number, ridge: Float64Array, unknowns = 0, spreads = 0): ConcentratedSpace {
   const k = ridge.length;
   const ridged = ridge.reduce((total, value) => total + (value > 0 ? 1 : 0), 0);
   return {
@@ -34,7 +37,7 @@ export function createConcentrated(count: number, ridge: Float64Array, unknowns 
     gram: new Float64Array(k * k),
     effects: new Float64Array(k),
     ridge,
-    residuals: new Float64Array(count + ridged),
+    residuals: new Float64Array(count + ridged + spreads * count),
     sumOfSquares: 0,
     logInformation: 0,
   };
@@ -46,6 +49,8 @@ export function concentrate(space: ConcentratedSpace, innovations: Innovations):
   const { columns, starts, count } = innovations;
   const k = effects.length;
   residuals.set(columns[0]);
+  for (let c = k + 1; c < columns.length; c++)
+    residuals.set(columns[c], residuals.length - (columns.length - c) * count);
   if (k > 0) {
     for (let i = 0; i < k; i++) {
       const a = columns[i + 1];

@@ -2,6 +2,7 @@
 import { type Arma, createArma, expand } from './arma.js';
 import { createFilter, type FilterSpace, filterErrors } from './filter.js';
 import type { Fit } from './fit.js';
+import { product } from './objective.js';
 import { checkRegressors, regressionColumns } from './regressors.js';
 import { toScale } from './scale.js';
 import { psiWeights } from './weights.js';
@@ -19,7 +20,10 @@ export function predict(fit: Fit, ahead: number): Prediction {
   const n = fit.values.length;
   checkRegressors(fit.regressors, n + ahead, `a forecast of ${ahead} periods`);
   const known = effectsOf(fit, n + ahead);
-  const filter = filtered(fit, known);
+  // Demand in a sold-out period spreads over the forecasts as its own column does, run through the filter.
+  const filter = filtered(fit, known, {
+    beside: fit.soldOut.map((period) => Float64Array.from({ length: n }, (_, t) => (t === period ? 1 : 0))),
+  });
   const { arma, size, s, delta, deltaLags, P, lagsUncertain, states } = filter;
   const { r, ar } = arma;
 
@@ -48,6 +52,7 @@ export function predict(fit: Fit, ahead: number): Prediction {
       for (let j = 0; j < used; j++) row[i] += reading[j] * P[i <= j ? i * size + j : j * size + i];
     return row;
   });
+  const demandShare = readings.map((reading) => states.slice(1).map((state) => product(reading, state, 0, size)));
   const psi = psiWeights(fit, ahead);
   const mean = new Float64Array(ahead);
   const standardError = new Float64Array(ahead);
@@ -61,7 +66,12 @@ export function predict(fit: Fit, ahead: number): Prediction {
       for (let i = 0; i < used; i++) sum += spread[h][i] * readings[j][i];
       // The surprises after the first step ahead, which P already holds.
       for (let l = 1; l <= j; l++) sum += psi[h - l] * psi[j - l];
-      covariance[h * ahead + j] = covariance[j * ahead + h] = sum * fit.innovationVariance;
+      const demand = fit.demandCovariance.reduce(
+        (total, row, a) =>
+          total + demandShare[h][a] * row.reduce((part, value, b) => part + value * demandShare[j][b], 0),
+        0,
+      );
+      covariance[h * ahead + j] = covariance[j * ahead + h] = sum * fit.innovationVariance + demand;
     }
     standardError[h] = Math.sqrt(covariance[h * ahead + h]);
   }
@@ -87,12 +97,28 @@ export function armaOf(fit: Fit): Arma {
   return arma;
 }
 
-/** The filter, run over the figures less `known`; `traced` for the smoother, `before` periods unknown put in front. */
-export function filtered(fit: Fit, known: Float64Array, traced = false, before = 0): FilterSpace {
-  const scaled = toScale(fit.values, fit.scale);
+/** The figures on the model's scale, NaN where missing; where sold out, the demand that is expected. */
+export function modelled(fit: Fit): Float64Array {
+  const values = toScale(fit.values, fit.scale);
+  fit.soldOut.forEach((t, i) => {
+    values[t] = fit.demand[i];
+  });
+  return values;
+}
+
+/**
+ * The filter, run over the figures less `known`; `traced` for the smoother, `before` periods unknown put in front,
+ * other columns `beside`.
+ */
+export function filtered(
+  fit: Fit,
+  known: Float64Array,
+  { traced = false, before = 0, beside = [] as readonly Float64Array[] } = {},
+): FilterSpace {
+  const scaled = modelled(fit);
   const series = new Float64Array(before + scaled.length).fill(Number.NaN);
   for (let t = 0; t < scaled.length; t++) series[before + t] = scaled[t] - known[t];
-  const filter = createFilter(armaOf(fit), [series], traced);
+  const filter = createFilter(armaOf(fit), [series, ...beside], traced);
   if (!filterErrors(filter)) throw new Error('the fitted model is not stationary');
   return filter;
 }

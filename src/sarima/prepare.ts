@@ -10,7 +10,9 @@ import { type Regressor, regressionColumns } from './regressors.js';
 export interface Prepared {
   /** Series (NaN where missing), constant, regressors; undifferenced, each in its own unit. */
   readonly columns: readonly Float64Array[];
-  /** The same differenced and without gaps: good enough to start a search from, and exact where there are none. */
+  /** The series with straight lines across its gaps. */
+  readonly filled: Float64Array;
+  /** The columns differenced, the series from `filled`: good enough to start a search from, and exact where there are none. */
   readonly startColumns: readonly Float64Array[];
   /** Where figures are missing. */
   readonly gaps: readonly number[];
@@ -84,12 +86,24 @@ export function prepare(
     });
   return {
     columns: [without(series, columns), ...columns],
+    filled: without(filled, columns),
     startColumns: [without(target, scaled), ...scaled],
     gaps,
     unit,
     unitOf,
     before: before.map((effect, i) => effect / unitOf[i]),
   };
+}
+
+/** The same with another series, in the prepared unit. */
+export function withSeries(prepared: Prepared, series: Float64Array): Prepared {
+  return { ...prepared, columns: [series, ...prepared.columns.slice(1)] };
+}
+
+/** The same with the figures of some periods missing. */
+export function withoutFigures(prepared: Prepared, periods: readonly number[]): Prepared {
+  const series = prepared.columns[0].map((value, t) => (periods.includes(t) ? Number.NaN : value));
+  return { ...withSeries(prepared, series), gaps: [...prepared.gaps, ...periods].sort((a, b) => a - b) };
 }
 
 /** ∇ᵈ∇ₘᴰ of every column. */

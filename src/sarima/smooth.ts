@@ -12,7 +12,7 @@ import type { Fit } from './fit.js';
 import { effectsOf, filtered } from './predict.js';
 
 export interface Smoothed {
-  /** On the model's scale, effects included; a gap holds its mean given all figures. */
+  /** On the model's scale, effects included; a gap, and a period that sold out, holds its mean given all figures. */
   readonly values: Float64Array;
   /** The mean of εₜ given all figures, for every period. */
   readonly surprises: Float64Array;
@@ -29,7 +29,7 @@ export function smooth(fit: Fit): Smoothed {
   const reach = Math.max(p + m * P + d + m * D, q + m * Q);
   const before = Math.max(0, reach - n);
   const known = effectsOf(fit, n);
-  const filter = filtered(fit, known, true, before);
+  const filter = filtered(fit, known, { traced: true, before });
   const { values, surprises } = smoothed(filter);
   return {
     values: values.slice(before).map((value, t) => value + known[t]),
