@@ -38,6 +38,7 @@ export interface Caveat {
     | 'unsettled-fit'
     | 'short-history'
     | 'missing-figures'
+    | 'sold-out'
     | 'wide-range'
     | 'leftover-pattern'
     | 'near-limit'
@@ -163,7 +164,7 @@ function relativeRangeOf({ totals }: Outlook): number | null {
 }
 
 /** Only what this series has earned, worst first. */
-function caveatsOf(fit: Fit, { season, events }: Context, relativeRange: number | null): Caveat[] {
+function caveatsOf(fit: Fit, { season, events, periods }: Context, relativeRange: number | null): Caveat[] {
   const none = { count: null, share: null, what: null, from: null, to: null };
   const years = fit.values.length / season;
   const missing = fit.values.filter(Number.isNaN).length;
@@ -173,6 +174,9 @@ function caveatsOf(fit: Fit, { season, events }: Context, relativeRange: number 
     ...(season > 1 && years < 4 ? [{ ...none, id: 'short-history' as const, count: Math.floor(years) }] : []),
     ...(relativeRange !== null && relativeRange > 0.5
       ? [{ ...none, id: 'wide-range' as const, share: relativeRange }]
+      : []),
+    ...(fit.soldOut.length > 0
+      ? [{ ...none, id: 'sold-out' as const, count: fit.soldOut.length, ...soldOutSpan(fit, periods) }]
       : []),
     ...(missing > 0 ? [{ ...none, id: 'missing-figures' as const, count: missing }] : []),
     ...events.map(({ what, from, to, effect }) => ({
@@ -186,6 +190,11 @@ function caveatsOf(fit: Fit, { season, events }: Context, relativeRange: number 
     { ...none, id: 'ranges-untested' as const },
   ];
 }
+
+const soldOutSpan = ({ soldOut }: Fit, periods: readonly string[]) => ({
+  from: periods[soldOut[0]],
+  to: periods[soldOut[soldOut.length - 1]],
+});
 
 const total = (values: readonly number[]): number => values.reduce((sum, value) => sum + value, 0);
 const mean = (values: readonly number[]): number => total(values) / values.length;

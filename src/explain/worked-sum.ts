@@ -117,7 +117,7 @@ function pastOf(fit: Fit): Past {
     scaled: at(values, earlier.values),
     surprise: at(surprises, earlier.surprises),
     regressor: (index, lag) => (lag <= n ? fit.regressors[index].values[n - lag] : 0),
-    isMissing: (lag) => lag > n || Number.isNaN(fit.values[n - lag]),
+    isMissing: (lag) => lag > n || Number.isNaN(fit.values[n - lag]) || fit.soldOut.includes(n - lag),
   };
 }
 

@@ -4,7 +4,7 @@ import type { BriefRecord } from '../record/record.js';
 import type { Formats } from './formats.js';
 import type { Theme } from './theme.js';
 
-export function checksOf({ figures, outlook, series }: BriefRecord, theme: Theme, formats: Formats) {
+export function checksOf({ figures, fit, outlook, series }: BriefRecord, theme: Theme, formats: Formats) {
   const list = (periods: readonly string[]) => periods.map((period) => formats.period(period, 'short')).join('; ');
   const found = figures.findings.map(({ id, periods }) => {
     const key = `checks.data.${id}`;
@@ -14,7 +14,16 @@ export function checksOf({ figures, outlook, series }: BriefRecord, theme: Theme
   const events = figures.events.map(({ what, from, to, effect }) =>
     theme.say(`checks.data.${effect}`, { what, span: formats.span(from, to ?? from) }),
   );
-  const data = [...found, ...events];
+  const soldOut =
+    figures.soldOut.length === 0
+      ? []
+      : [
+          theme.say(`checks.data.sold-out.${formats.plural(figures.soldOut.length) === 'one' ? 'one' : 'other'}`, {
+            list: list(figures.soldOut),
+            demand: fit.demand.map(({ middle }) => formats.number(middle, series.places)).join('; '),
+          }),
+        ];
+  const data = [...found, ...soldOut, ...events];
   const ranges = theme.say('checks.ranges.text', {
     paths: formats.number(outlook.paths, 0),
     seed: String(outlook.seed),
@@ -36,13 +45,19 @@ export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, 
       return figures.values.flatMap((_, t) => (first + t >= start && first + t <= end ? [t] : []));
     }),
   );
+  const atLeast = new Set(figures.soldOut.map((period) => periodIndex(period, every) - first));
+  const figureText = (t: number, value: number | null) => {
+    if (value === null) return theme.say('checks.past.missing');
+    const number = formats.number(value, series.places);
+    return atLeast.has(t) ? theme.say('checks.past.at-least', { value: number }) : number;
+  };
   const years = new Map<number, { text: string; isMarked: boolean; isMissing: boolean }[]>();
   figures.values.forEach((value, t) => {
     const year = yearOf(first + t, every, plan.yearStarts);
     const row =
       years.get(year) ?? Array.from({ length: season }, () => ({ text: '', isMarked: false, isMissing: false }));
     row[position(first + t, every, plan.yearStarts) - 1] = {
-      text: value === null ? theme.say('checks.past.missing') : formats.number(value, series.places),
+      text: figureText(t, value),
       isMarked: marked.has(t),
       isMissing: value === null,
     };
@@ -57,6 +72,11 @@ export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, 
         : `${i + 1}`,
     ),
     rows: [...years].map(([year, cells]) => ({ year: String(year), cells })),
-    note: marked.size > 0 ? theme.say('checks.past.marked', { every: theme.say(`every.${every}.other`) }) : null,
+    note: [
+      ...(marked.size > 0 ? ['checks.past.marked'] : []),
+      ...(atLeast.size > 0 ? ['checks.past.at-least-note'] : []),
+    ]
+      .map((key) => theme.say(key, { every: theme.say(`every.${every}.other`) }))
+      .join(' '),
   };
 }

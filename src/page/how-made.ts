@@ -23,7 +23,11 @@ export function madeOf(record: BriefRecord, theme: Theme, formats: Formats, equa
       theme.say('made.last', { unit: series.unit }),
     ].join(' '),
     reason: model.reason === null ? null : theme.say('made.reason', { reason: model.reason }),
-    notation: theme.say('made.notation', { form: formText(model.form), scale: theme.say(`made.on.${scale}`) }),
+    notation: theme.say('made.notation', {
+      form: formText(model.form),
+      scale: theme.say(`made.on.${scale}`),
+      fitted: theme.say(`made.fitted.${model.fittedBy}`),
+    }),
     note: theme.say('made.symbols-note', { every, 'every-other': theme.say(`every.${series.every}.other`) }),
     equations: [
       ...titled('backshift', tex.backshift),
@@ -58,7 +62,7 @@ export function sumTable(record: BriefRecord, theme: Theme, formats: Formats) {
     lead: theme.say(`sum.lead.${lead}`, { unit: series.unit }),
     heads: ['what', 'known', 'weight', 'product'].map((key) => theme.say(`sum.${key}`)),
     rows: sum.terms.map((term) => ({
-      what: `${termName(term, sum, record, theme, formats)}${term.smoothed ? theme.say('sum.smoothed') : ''}`,
+      what: `${termName(term, sum, record, theme, formats)}${standIn(term, record, theme)}`,
       known: term.value === null ? '' : formats.number(term.value, term.decimals.value),
       weight: term.weight === null ? '' : formats.number(term.weight, term.decimals.weight),
       product: formats.number(term.product, sum.decimals.product),
@@ -68,12 +72,22 @@ export function sumTable(record: BriefRecord, theme: Theme, formats: Formats) {
       product: formats.number(sum.total, sum.decimals.total),
     },
     back: sum.back.map((line) => ({
-      what: `${backName(line, sum, record, theme, formats)}${line.smoothed ? theme.say('sum.smoothed') : ''}`,
+      what: `${backName(line, sum, record, theme, formats)}${standIn(line, record, theme)}`,
       product: formats.number(line.value, line.decimals),
       isResult: line.kind === 'expected',
     })),
     rounded: first === sum.expected ? null : theme.say('sum.rounded', { shown: formats.number(first, printed.places) }),
   };
+}
+
+/** What a figure that was not observed stands in for. */
+function standIn(
+  { smoothed, period }: { readonly smoothed: boolean; readonly period: string | null },
+  { figures }: BriefRecord,
+  theme: Theme,
+): string {
+  if (!smoothed) return '';
+  return theme.say(period !== null && figures.soldOut.includes(period) ? 'sum.demand' : 'sum.smoothed');
 }
 
 function termName(
@@ -147,6 +161,33 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
             : `${formats.number(Math.abs(moves), Math.max(series.places, Math.abs(moves) < 1 ? 1 : 0))} ${series.unit}`,
       };
     }),
+  };
+}
+
+/** Towards what shrunk estimates were pulled, and where they would stand without; null by maximum likelihood. */
+export function pullTable({ model, fit }: BriefRecord, theme: Theme, formats: Formats) {
+  const { priors } = model;
+  if (priors === null) return null;
+  const number = (value: number) => formats.number(value, 2);
+  const stated = fit.coefficients.flatMap(({ name, symbol, value }, i) => {
+    const prior = priors.coefficients[name];
+    return prior === undefined ? [] : [{ symbol, value, prior, free: fit.unrestricted?.[i].value ?? null }];
+  });
+  return {
+    title: theme.say('pull.title'),
+    lead: theme.say('pull.lead', {
+      count: formats.number(fit.coefficients.length, 0),
+      effective: formats.number(fit.effectiveCoefficients, 1),
+    }),
+    heads: ['symbol', 'used', 'towards', 'spread', 'free'].map((key) => theme.say(`pull.${key}`)),
+    rows: stated.map(({ symbol, value, prior, free }) => ({
+      symbol,
+      used: number(value),
+      towards:
+        prior.on === 'partial' ? theme.say('pull.partial', { centre: number(prior.centre) }) : number(prior.centre),
+      spread: number(prior.spread),
+      free: free === null ? theme.say('pull.unknown') : number(free),
+    })),
   };
 }
 

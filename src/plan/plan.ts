@@ -62,6 +62,8 @@ export interface PlannedSeries {
   readonly scale: string | null;
   readonly constant: boolean | null;
   readonly fittedBy: 'maximum-likelihood' | 'shrunk' | null;
+  /** In place of the usual ones; null leaves these as they are. */
+  readonly priors: PlannedPriors | null;
   readonly reason: string | null;
   readonly events: readonly PlannedEvent[];
   readonly soldOut: readonly string[];
@@ -72,6 +74,13 @@ export interface PlannedSeries {
   readonly columnAt: Place;
   /** Every period that the series' keys name, to be checked against the figures. */
   readonly named: readonly NamedPeriod[];
+}
+
+export interface PlannedPriors {
+  readonly coefficients: Readonly<
+    Record<string, { readonly centre: number; readonly spread: number; readonly on: 'coefficient' | 'partial' }>
+  >;
+  readonly ridge: number | null;
 }
 
 export interface PlannedEvent {
@@ -214,6 +223,7 @@ const seriesOf = (series: SeriesText, slug: string, path: Path, document: Locate
     scale: series.scale ?? null,
     constant: series.constant ?? null,
     fittedBy: series['fitted-by'] ?? null,
+    priors: series.priors ? { coefficients: series.priors.coefficients, ridge: series.priors.ridge ?? null } : null,
     reason: series.reason ?? null,
     events: series.events.map((event, i) => ({
       ...event,

@@ -35,6 +35,7 @@ export const remarksOnRules = (plan: unknown, checkModel: CheckModel): readonly 
       ...periodsFit(plan, path, every),
       ...spansRunForward(plan, path, every),
       ...soldOutOnce(plan, path),
+      ...priorsShrunk(plan, path),
       ...order(plan, path),
       ...budgetSide(plan, path),
       ...model(plan, path, every, checkModel),
@@ -159,6 +160,13 @@ const soldOutOnce = (plan: unknown, series: Path): readonly Remark[] => {
       ? [{ path, on: 'value', message: sentence(plan, path, 'stands in the list twice') }]
       : [],
   );
+};
+
+const priorsShrunk = (plan: unknown, series: Path): readonly Remark[] => {
+  const path = [...series, 'priors'];
+  if (valueAt(plan, path) === undefined || text(plan, [...series, 'fitted-by']) === 'shrunk') return [];
+  const message = 'priors stand without "fitted-by: shrunk", which alone uses them; add it, or leave priors out';
+  return [{ path, on: 'key', message }];
 };
 
 /**

@@ -175,6 +175,28 @@ const budget = z.strictObject(
   { error: mapping },
 );
 
+const prior = z.strictObject(
+  {
+    centre: number.describe('what the coefficient is pulled towards'),
+    spread: aboveZero.describe('how far from it is still likely: one standard deviation'),
+    on: oneOf(['coefficient', 'partial'])
+      .default('coefficient')
+      .describe('coefficient, or partial for the partial autocorrelation in its place'),
+  },
+  { error: mapping },
+);
+
+const priors = z.strictObject(
+  {
+    coefficients: z
+      .record(z.string(), prior, { error: 'should hold coefficients by name, such as phi1, indented below it' })
+      .default({})
+      .describe('a centre and a spread by the coefficient’s name, such as phi1 or Theta1'),
+    ridge: atLeastZero.optional().describe('how many observations’ worth of no constant'),
+  },
+  { error: mapping },
+);
+
 const series = z.strictObject(
   {
     name: line.describe('what the brief calls the series'),
@@ -185,6 +207,7 @@ const series = z.strictObject(
     scale: line.optional().describe('plain, log or box-cox with its number'),
     constant: yesOrNo.optional().describe('whether the model has a constant'),
     'fitted-by': oneOf(['maximum-likelihood', 'shrunk']).optional().describe('how the coefficients are estimated'),
+    priors: priors.optional().describe('what shrunk estimates are pulled towards, in place of the usual values'),
     reason: prose.optional().describe('why this model'),
     events: z.array(event, { error: 'should be a list' }).default([]).describe('what happened in the past'),
     'sold-out': z

@@ -10,6 +10,7 @@ import type { Context } from '../explain/context.js';
 import { explain } from '../explain/explain.js';
 import { makeOutlook, type Outlook, type Span } from '../outlook/outlook.js';
 import { type Fit, fitModel } from '../sarima/fit.js';
+import { parseScale } from '../sarima/scale.js';
 import { autocorrelations } from '../stats/autocorrelation.js';
 import { seedOf } from '../stats/generator.js';
 import { type BriefInputs, periodAt } from './inputs.js';
@@ -52,18 +53,33 @@ export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
   });
 }
 
-const fitOf = ({ figures, model, series }: BriefInputs): Fit =>
-  fitModel(
+const fitOf = ({ figures, model, series }: BriefInputs, fittedBy = model.fittedBy): Fit => {
+  const first = periodIndex(figures.start, series.every);
+  return fitModel(
     figures.values.map((value) => value ?? Number.NaN),
     {
       form: model.form,
       scale: model.scale,
       constant: model.constant,
-      fittedBy: model.fittedBy,
+      fittedBy,
+      priors: model.priors,
       regressors: figures.regressors,
+      soldOut: figures.soldOut.map((period) => periodIndex(period, series.every) - first),
       season: series.season,
     },
   );
+};
+
+/** What maximum likelihood makes of a model that was shrunk; null where it needs more figures than there are. */
+function unrestrictedOf(fit: Fit, inputs: BriefInputs): BriefRecord['fit']['unrestricted'] {
+  if (fit.fittedBy !== 'shrunk') return null;
+  try {
+    const { coefficients } = fitOf(inputs, 'maximum-likelihood');
+    return coefficients.map(({ value, standardError }) => ({ value, standardError }));
+  } catch {
+    return null;
+  }
+}
 
 const outlookOf = (fit: Fit, inputs: BriefInputs): Outlook =>
   makeOutlook(fit, {
@@ -115,7 +131,9 @@ function contextOf(inputs: BriefInputs): Context {
   };
 }
 
-function fitPart(fit: Fit, { series }: BriefInputs): BriefRecord['fit'] {
+function fitPart(fit: Fit, inputs: BriefInputs): BriefRecord['fit'] {
+  const { series, figures } = inputs;
+  const { from } = parseScale(fit.scale);
   const standardized = Array.from(fit.standardizedResiduals, missable);
   const known = standardized.filter((value) => value !== null).length;
   const lags = Math.max(0, Math.min(Math.max(2 * series.season, 8), Math.floor(known / 2)));
@@ -132,6 +150,9 @@ function fitPart(fit: Fit, { series }: BriefInputs): BriefRecord['fit'] {
     observations: fit.observations,
     residuals: Array.from(fit.residuals, missable),
     standardizedResiduals: standardized,
+    effectiveCoefficients: fit.effectiveCoefficients,
+    unrestricted: unrestrictedOf(fit, inputs),
+    demand: figures.soldOut.map((period, i) => ({ period, middle: from(fit.demand[i]) })),
     settled: fit.settled,
     nearUnitRoots: [...fit.nearUnitRoots],
     nearlyCancels: fit.nearlyCancels,

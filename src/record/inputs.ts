@@ -8,6 +8,7 @@ import { type Every, periodIndex, periodText, seasonOf } from '../calendar/calen
 import type { SeriesFigures } from '../figures/figures.js';
 import type { Plan, PlannedSeries } from '../plan/plan.js';
 import { formText, parseForm } from '../sarima/form.js';
+import { defaultPriors, statedPriors } from '../sarima/priors.js';
 import { canonicalJson, sha256 } from './canonical.js';
 import { eventRegressor } from './events.js';
 import type { BriefRecord } from './record.js';
@@ -27,6 +28,9 @@ export function briefInputs(
   const length = values.length + plan.ahead;
   const events = series.events.map((event, i) => ({ ...event, coefficient: `event${i + 1}` }));
   const form = parseForm(series.model);
+  const scale = series.scale ?? 'plain';
+  const constant = series.constant ?? form.d + form.D === 0;
+  const fittedBy = series.fittedBy ?? 'maximum-likelihood';
   return {
     issued: plan.issued,
     plan: planPart(plan, templates),
@@ -52,10 +56,10 @@ export function briefInputs(
     },
     model: {
       form: formText(form),
-      scale: series.scale ?? 'plain',
-      constant: series.constant ?? form.d + form.D === 0,
-      fittedBy: series.fittedBy ?? 'maximum-likelihood',
-      priors: null,
+      scale,
+      constant,
+      fittedBy,
+      priors: fittedBy === 'shrunk' ? statedPriors(form, defaultPriors(form, scale, constant), series.priors) : null,
       chosenBy: 'planner',
       reason: series.reason,
     },

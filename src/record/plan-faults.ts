@@ -4,6 +4,7 @@ import type { SeriesFigures } from '../figures/figures.js';
 import { type Fault, shown } from '../figures/input-error.js';
 import type { Plan, PlannedEvent, PlannedSeries } from '../plan/plan.js';
 import { type Form, parseForm } from '../sarima/form.js';
+import { NO_PRIORS, penaltyOf, statedPriors } from '../sarima/priors.js';
 import { eventRegressor } from './events.js';
 
 /** Every such fault of one series. */
@@ -18,7 +19,13 @@ export function planFaults(plan: Plan, series: PlannedSeries, figures: SeriesFig
     const message = eventFault(event, figures);
     return message === null ? [] : [say(event.at, message)];
   });
-  const rest = [aheadFault(plan, figures), modelFault(series, figures.every), laterFault(series)];
+  const rest = [
+    aheadFault(plan, figures),
+    modelFault(series, figures.every),
+    laterFault(series),
+    priorsFault(series),
+    ...series.soldOut.map((period) => soldOutFault(period, figures)),
+  ];
   return [...events, ...rest.flatMap((message) => (message === null ? [] : [say(series.at, message)]))];
 }
 
@@ -63,15 +70,30 @@ export function seasonFault({ m }: Form, model: string, every: Every): string | 
 }
 
 /** What the plan may ask for and this version does not do, where leaving it aside would make the brief wrong. */
-function laterFault({ model, fittedBy, soldOut }: PlannedSeries): string | null {
-  if (model === 'advise') {
-    return 'model "advise" comes with a later version; write a model, such as (0,1,1)x(0,1,1)4';
+function laterFault({ model }: PlannedSeries): string | null {
+  return model === 'advise'
+    ? 'model "advise" comes with a later version; write a model, such as (0,1,1)x(0,1,1)4'
+    : null;
+}
+
+function priorsFault({ model, priors, constant }: PlannedSeries): string | null {
+  if (priors === null || model === 'advise') return null;
+  const form = parseForm(model);
+  try {
+    penaltyOf(form, statedPriors(form, NO_PRIORS, priors), constant ?? false, 1);
+    return null;
+  } catch (error) {
+    return error instanceof Error ? error.message : String(error);
   }
-  if (fittedBy === 'shrunk') {
-    return 'fitted-by "shrunk" comes with a later version; write maximum-likelihood, or leave it out';
-  }
-  if (soldOut.length > 0) {
-    return `sold-out ${soldOut.join(', ')} comes with a later version, and would be misread as plain figures; leave those cells of the figures empty, and sold-out out`;
-  }
-  return null;
+}
+
+function soldOutFault(period: string, { every, start, values }: SeriesFigures): string | null {
+  if (!isPeriod(period, every)) return `sold-out ${shown(period)} is not a period of figures that come every ${every}`;
+  const t = periodIndex(period, every) - periodIndex(start, every);
+  const last = periodText(periodIndex(start, every) + values.length - 1, every);
+  if (t < 0 || t >= values.length)
+    return `sold-out ${period} lies outside the figures, which run from ${start} to ${last}; leave it out`;
+  return values[t] === null
+    ? `sold-out ${period} has no figure, so there is no least demand to go by; put in what was sold, or leave it out`
+    : null;
 }

@@ -215,6 +215,14 @@ const printed = z.strictObject({
   }),
 });
 
+const priors = z.strictObject({
+  coefficients: z.record(
+    z.string(),
+    z.strictObject({ centre: number, spread: number, on: z.enum(['coefficient', 'partial']) }),
+  ),
+  ridge: number,
+});
+
 /** Facts that sentences are chosen by; computed here so that templates choose words and nothing else. */
 const facts = z.strictObject({
   direction: z.strictObject({
@@ -317,7 +325,8 @@ export const recordSchema = z.strictObject({
     scale: z.string(),
     constant: z.boolean(),
     fittedBy: z.enum(['maximum-likelihood', 'shrunk']),
-    priors: z.unknown().nullable(),
+    /** What the estimates were pulled towards; null by maximum likelihood. */
+    priors: priors.nullable(),
     chosenBy: z.enum(['planner', 'advice']),
     reason: z.string().nullable(),
   }),
@@ -327,10 +336,16 @@ export const recordSchema = z.strictObject({
     logLikelihood: number,
     aicc: missable,
     observations: count,
-    /** One-step surprises on the model's scale; null at gaps and in the diffuse start. */
+    /** One-step surprises on the model's scale; null at gaps, where sold out, and in the diffuse start. */
     residuals: z.array(missable),
     standardizedResiduals: z.array(missable),
     settled: z.boolean(),
+    /** What the coefficients count for: their number, or less where they are shrunk. */
+    effectiveCoefficients: number,
+    /** By maximum likelihood, in the order of `coefficients`, where these are shrunk; null where not, or not to be had. */
+    unrestricted: z.array(z.strictObject({ value: number, standardError: missable })).nullable(),
+    /** The demand expected in each period that sold out: its middle, in units. */
+    demand: z.array(z.strictObject({ period, middle: number })),
     /** Polynomials with a root within 0.01 of the unit circle, and whether two sides nearly cancel. */
     nearUnitRoots: z.array(z.string()),
     nearlyCancels: z.boolean(),

@@ -46,6 +46,21 @@ export function coefficientNames(form: Form): string[] {
   return blocksOf(form).flatMap(({ kind, order }) => Array.from({ length: order }, (_, i) => `${kind}${i + 1}`));
 }
 
+export const NO_PRIORS: Priors = { coefficients: {}, ridge: 0 };
+
+/** A planner's own priors over the default ones; every coefficient of the form is named, so that a record tells all. */
+export function statedPriors(
+  form: Form,
+  usual: Priors,
+  own: { readonly coefficients: Priors['coefficients']; readonly ridge: number | null } | null,
+): Priors {
+  const unstated = Object.fromEntries(coefficientNames(form).map((name) => [name, UNSTATED]));
+  return {
+    coefficients: { ...unstated, ...usual.coefficients, ...own?.coefficients },
+    ridge: own?.ridge ?? usual.ridge,
+  };
+}
+
 /** No penalty at all. `columns`: the constant and the regressors. */
 export function noPenalty(columns: number): Penalty {
   return { rows: 0, fill: () => 0, ridge: new Float64Array(columns), centre: null };

@@ -107,3 +107,26 @@ test('too few figures for the model is an error that says how many it needs', ()
     /needs at least \d+ figures; there are 12/,
   );
 });
+
+test('shrunk: the record names every prior, and keeps the estimates that are free of them', () => {
+  const more =
+    '    fitted-by: shrunk\n    priors:\n      coefficients:\n        theta1: { centre: -0.3, spread: 0.1 }\n';
+  const { model, fit } = assemble(inputs({ model: '(0,1,1)x(0,1,1)4', more }, wobbly), origin);
+  expect(model.priors?.coefficients.theta1).toEqual({ centre: -0.3, spread: 0.1, on: 'coefficient' });
+  expect(Object.keys(model.priors?.coefficients ?? {})).toEqual(['theta1', 'Theta1']);
+  const free = assemble(inputs({ model: '(0,1,1)x(0,1,1)4' }, wobbly), origin).fit;
+  expect(fit.unrestricted?.map(({ value }) => value)).toEqual(free.coefficients.map(({ value }) => value));
+  expect(Math.abs(fit.coefficients[0].value + 0.3)).toBeLessThan(Math.abs(free.coefficients[0].value + 0.3));
+  expect(free.unrestricted).toBeNull();
+});
+
+test('sold out: demand lies above what was sold, no surprise is read into it, and the forecast rises with it', () => {
+  const sold = wobbly.map((value, t) => (t === 13 ? value - 6 : value));
+  const before = assemble(inputs({ model: '(0,1,1)x(0,1,1)4' }, sold), origin);
+  const record = assemble(inputs({ model: '(0,1,1)x(0,1,1)4', more: '    sold-out: [2026-Q4]\n' }, sold), origin);
+  expect(record.fit.demand.map(({ period }) => period)).toEqual(['2026-Q4']);
+  expect(record.fit.demand[0].middle).toBeGreaterThan(sold[13]);
+  expect(record.fit.residuals[13]).toBeNull();
+  expect(before.fit.residuals[13]).not.toBeNull();
+  expect(record.facts.caveats.map(({ id }) => id)).toContain('sold-out');
+});

@@ -40,8 +40,16 @@ test('an event with no figure in its periods has no effect to measure', () => {
 
 test('what is asked for and not there yet is refused, never passed over', () => {
   expect(faults({ model: 'advise' })[0]?.message).toMatch(/write a model, such as \(0,1,1\)x\(0,1,1\)4/);
-  expect(faults({ more: '    fitted-by: shrunk\n' })[0]?.message).toMatch(/fitted-by "shrunk"/);
-  expect(faults({ more: '    sold-out: [2024-Q1]\n' })[0]?.message).toMatch(/sold-out 2024-Q1/);
+});
+
+test('a sold-out period needs a figure, and priors need a coefficient of the model', () => {
+  expect(faults({ more: '    sold-out: [2024-Q1]\n' })).toEqual([]);
+  expect(faults({ more: '    sold-out: [2031-Q1]\n' })[0]?.message).toMatch(/2031-Q1 lies outside the figures/);
+  const values = [30, 11, null, 20, 33, 10, 14, 21, 36, 12, 13, 25];
+  const missing = faults({ more: '    sold-out: [2024-Q1]\n' }, values)[0]?.message;
+  expect(missing).toMatch(/2024-Q1 has no figure/);
+  const priors = '    fitted-by: shrunk\n    priors:\n      coefficients:\n        phi9: { centre: 0, spread: 1 }\n';
+  expect(faults({ more: priors })[0]?.message).toMatch(/a prior for "phi9"/);
 });
 
 test('a season that is not the figures’ own, and a look too far ahead', () => {

@@ -91,6 +91,72 @@ test('enough of these fits agree with R’s in likelihood for their numbers to h
   expect(compared).toBeGreaterThanOrEqual(40);
 });
 
+describe('seasons of every length against R', () => {
+  /** Season, figures, forms. */
+  const SEASONS: readonly (readonly [number, string, readonly string[]])[] = [
+    [1, 'as.numeric(lh)', ['(1,0,1)', '(3,0,0)']],
+    [2, 'colSums(matrix(log(AirPassengers), 6))', ['(0,1,1)x(0,1,1)', '(1,0,0)x(0,1,1)']],
+    [4, 'log(as.numeric(UKgas))', ['(0,1,1)x(0,1,1)', '(1,0,1)x(0,1,1)']],
+    [12, 'as.numeric(USAccDeaths)', ['(0,1,1)x(0,1,1)', '(1,0,1)x(0,1,1)']],
+    [13, 'as.numeric(co2)[1:156]', ['(0,1,1)x(0,1,1)', '(1,1,0)x(0,1,1)']],
+    [52, 'as.numeric(sunspot.month)[1:220]', ['(0,1,1)x(0,0,1)', '(1,0,0)x(0,1,0)', '(1,1,1)x(0,1,0)']],
+  ];
+  test.each(SEASONS.flatMap(([m, data, forms]) => forms.map((form) => [m, form, data] as const)))(
+    'm = %i, %s',
+    async (m, brackets, data) => {
+      const text = m === 1 ? brackets : `${brackets}${m}`;
+      const { p, d, q, P, D, Q } = parseForm(text);
+      const x = await r.numbers(data);
+      const [loglik, ...numbers] = await r.numbers(`{
+        f <- arima(${data}, c(${p},${d},${q}), seasonal = list(order = c(${P},${D},${Q}), period = ${m}), method = "ML",
+          include.mean = ${d + D === 0 ? 'TRUE' : 'FALSE'}, optim.control = list(reltol = 1e-12, maxit = 500))
+        c(f$loglik, coef(f), sqrt(diag(f$var.coef))) }`);
+      const fit = fitModel(x, { form: text });
+      expect(fit.logLikelihood).toBeGreaterThan(loglik - 0.01);
+      if (fit.logLikelihood > loglik + EQUAL) return;
+      fit.coefficients.forEach(({ value, standardError, name }, i) => {
+        const error = numbers[fit.coefficients.length + i];
+        expect(Math.abs(value - numbers[i]), name).toBeLessThan(0.02 * error);
+        expect(Math.abs((standardError ?? 0) / error - 1), `${name}’s error`).toBeLessThan(0.03);
+      });
+    },
+  );
+});
+
+describe('regressors against R’s arima(xreg =)', () => {
+  test.each([
+    [
+      'log(as.numeric(UKgas))',
+      '(0,1,1)x(0,1,1)4',
+      { step: 'as.numeric(time(UKgas) >= 1970)', blip: 'as.numeric(abs(time(UKgas) - 1980.25) < 0.01)' },
+    ],
+    // The seat belt law, a published example: Harvey & Durbin, Journal of the Royal Statistical Society A 149 (1986).
+    [
+      'log(as.numeric(UKDriverDeaths))',
+      '(1,0,0)x(1,0,0)12',
+      { law: 'as.numeric(Seatbelts[, "law"])', petrol: 'as.numeric(Seatbelts[, "PetrolPrice"])' },
+    ],
+  ])('%s, %s', async (data, text, columns) => {
+    const { p, d, q, P, D, Q, m } = parseForm(text);
+    const names = Object.keys(columns);
+    const [loglik, ...numbers] = await r.numbers(`{
+      f <- arima(${data}, c(${p},${d},${q}), seasonal = list(order = c(${P},${D},${Q}), period = ${m}), method = "ML",
+        xreg = cbind(${Object.values(columns).join(', ')}), optim.control = list(reltol = 1e-14, maxit = 1000))
+      c(f$loglik, coef(f), sqrt(diag(f$var.coef))) }`);
+    const regressors = await Promise.all(
+      names.map(async (name) => ({ name, values: await r.numbers(columns[name as keyof typeof columns] as string) })),
+    );
+    const fit = fitModel(await r.numbers(data), { form: text, regressors });
+    expect(fit.logLikelihood).toBeGreaterThan(loglik - 1e-3);
+    if (fit.logLikelihood > loglik + 0.01) return;
+    fit.coefficients.forEach(({ value, standardError, name }, i) => {
+      const error = numbers[fit.coefficients.length + i];
+      expect(Math.abs(value - numbers[i]), name).toBeLessThan(0.05 * error);
+      expect(Math.abs((standardError ?? 0) / error - 1), `${name}’s error`).toBeLessThan(0.05);
+    });
+  });
+});
+
 describe('printed values, to their last printed digit', () => {
   /** Each: R expression, options, [name, value, standard error], σ², log-likelihood, source. */
   const PRINTED = [

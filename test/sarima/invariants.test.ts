@@ -8,6 +8,7 @@ import { differencePolynomial, multiply } from '../../src/sarima/polynomial.js';
 import { predict } from '../../src/sarima/predict.js';
 import { smooth } from '../../src/sarima/smooth.js';
 import { createGenerator } from '../../src/stats/generator.js';
+import { simulate } from './simulate.js';
 
 const order = fc.integer({ min: 0, max: 2 });
 const forms: fc.Arbitrary<Form> = fc
@@ -53,35 +54,6 @@ test('differencing and integrating undo each other', () => {
   );
 });
 
-/** A path of φ(B)Φ(Bᵐ)w = θ(B)Θ(Bᵐ)ε, integrated, after a long run-in; the recursion is written out here. */
-function simulate(
-  seed: number,
-  n: number,
-  at: { phi: number; theta: number; Phi: number; Theta: number; m: number; d: number; D: number },
-): number[] {
-  const { normal } = createGenerator(seed);
-  const { phi, theta, Phi, Theta, m, d, D } = at;
-  const total = n + 200;
-  const e = Array.from({ length: total }, normal);
-  const w: number[] = [];
-  const past = (x: readonly number[], t: number) => (t >= 0 ? x[t] : 0);
-  for (let t = 0; t < total; t++)
-    w.push(
-      phi * past(w, t - 1) +
-        Phi * past(w, t - m) -
-        phi * Phi * past(w, t - m - 1) +
-        e[t] +
-        theta * past(e, t - 1) +
-        Theta * past(e, t - m) +
-        theta * Theta * past(e, t - m - 1),
-    );
-  let y = w.slice(200);
-  if (D === 1) for (let t = m; t < n; t++) y[t] += y[t - m];
-  if (d === 1) for (let t = 1; t < n; t++) y[t] += y[t - 1];
-  y = y.map((value) => 100 + value);
-  return y;
-}
-
 describe('a simulated model’s coefficients are recovered within four standard errors', () => {
   test.each([
     ['(1,0,0)x(0,0,1)4', { phi: 0.6, theta: 0, Phi: 0, Theta: -0.5, m: 4, d: 0, D: 0 }],
@@ -106,15 +78,16 @@ describe('the expanded equation, fed with figures and surprises given all figure
   const event = y.map((_, t) => (t === 30 || t === 31 ? 1 : 0));
   test.each([
     ['(1,0,1)x(0,1,1)4', [], false],
+    ['(0,1,1)x(0,1,1)4', [10, 40], false, [38, 56, 59]],
     ['(0,1,1)x(0,1,1)4', [10, 57, 58], false],
     ['(2,0,0)x(1,0,0)4', [], true],
     ['(0,1,2)x(0,1,1)4', [3, 40], true],
     ['(0,2,1)', [], false],
     ['(1,0,0)x(0,2,1)4', [], false],
-  ] as const)('%s, gaps at %j, event %s', (form, gaps, withEvent) => {
+  ] as const)('%s, gaps at %j, event %s, sold out %j', (form, gaps, withEvent, soldOut: readonly number[] = []) => {
     const values = y.map((value, t) => ((gaps as readonly number[]).includes(t) ? Number.NaN : value));
     const regressors = withEvent ? [{ name: 'event1', values: [...event, 1] }] : [];
-    const fit = fitModel(values, { form, regressors });
+    const fit = fitModel(values, { form, regressors, soldOut });
     const { values: known, surprises } = smooth(fit);
     const effect = (t: number) => (withEvent ? fit.effects[0] * (t === values.length ? 1 : event[t]) : 0);
     const { lags, surprises: past, constant } = expand(fit);
@@ -129,7 +102,8 @@ describe('the expanded equation, fed with figures and surprises given all figure
 });
 
 describe('hard figures give a result or an error that says what is wrong', () => {
-  const y = simulate(3, 48, { phi: 0, theta: -0.4, Phi: 0, Theta: -0.5, m: 4, d: 1, D: 1 });
+  const AT = { phi: 0, theta: -0.4, Phi: 0, Theta: -0.5, m: 4, d: 1, D: 1 };
+  const y = simulate(3, 48, AT);
   test.each([1e-9, 1, 1e12])('figures times %d have the same coefficients', (factor) => {
     const [plain, scaled] = [y, y.map((value) => factor * value)].map((values) =>
       fitModel(values, { form: '(0,1,1)x(0,1,1)4' }),
@@ -137,6 +111,32 @@ describe('hard figures give a result or an error that says what is wrong', () =>
     plain.coefficients.forEach(({ value }, i) => {
       expect(scaled.coefficients[i].value).toBeCloseTo(value, 6);
     });
+  });
+
+  const odd = createGenerator(3);
+  const long = simulate(4, 2000, { phi: 0, theta: -0.4, Phi: 0, Theta: -0.5, m: 12, d: 1, D: 1 });
+  test.each([
+    ['one value repeated from the middle on', y.map((value, t) => (t > 20 ? 50 : value))],
+    ['changes of sign', y.map((value, t) => (t % 2 === 0 ? 1 : -1) * (value - 100))],
+    ['mostly zeros', y.map((value, t) => (t % 5 === 0 ? value : 0))],
+    ['one spike', y.map((value, t) => (t === 30 ? 1e9 : value))],
+    ['60% missing', simulate(6, 120, AT).map((value) => (odd.uniform() < 0.6 ? Number.NaN : value))],
+    ['2,000 figures', long],
+    ['2,000 figures, 60% missing', long.map((value) => (odd.uniform() < 0.6 ? Number.NaN : value))],
+  ] as const)('%s', (_, values) => {
+    for (const form of ['(0,1,1)x(0,1,1)4', '(1,0,2)x(0,1,1)4', '(2,1,1)x(0,1,1)4'])
+      for (const fittedBy of ['maximum-likelihood', 'shrunk'] as const) {
+        const fit = fitModel(values, { form, fittedBy });
+        const { mean, standardError } = predict(fit, 8);
+        const numbers = [fit.logLikelihood, ...fit.coefficients.map(({ value }) => value), ...mean, ...standardError];
+        expect(numbers.every(Number.isFinite), form).toBe(true);
+        expect(fit.innovationVariance).toBeGreaterThan(0);
+      }
+  });
+
+  test('a position of the season without any figure', () => {
+    const values = y.map((value, t) => (t % 4 === 0 ? Number.NaN : value));
+    expect(() => fitModel(values, { form: '(0,1,1)x(0,1,1)4' })).toThrow(/every position of the season needs a figure/);
   });
 
   test('constant figures, too few figures, figures off the scale', () => {
