@@ -1,4 +1,7 @@
 /** The library: what a program can do with seasonal ARIMA models and briefs. */
+
+export { type Advice, advise, type Candidate } from './advice/advise.js';
+export type { AdviceOptions, Reason } from './advice/choose.js';
 export type { Reporter, WriteOptions } from './commands/work.js';
 export { type WriteResult, writeBriefs } from './commands/write.js';
 export { type ForecastPeriod, forecast } from './outlook/outlook.js';

@@ -1,6 +1,6 @@
 /** For each coefficient the facts that its sentence is chosen by, and how much hangs on its exact value. */
 import type { Coefficient, Fit } from '../sarima/fit.js';
-import { predict } from '../sarima/predict.js';
+import { movedBy, predictMeans } from '../sarima/predict.js';
 import { parseScale } from '../sarima/scale.js';
 
 export type Role =
@@ -28,7 +28,7 @@ const FAMILIES = { phi: 'ar', theta: 'ma', Phi: 'seasonal-ar', Theta: 'seasonal-
 
 /** `lasting`: the names of the regressors that stand for lasting events; `passing` likewise. */
 export function meanings(fit: Fit, lasting: ReadonlySet<string>, passing: ReadonlySet<string>): Meaning[] {
-  return fit.coefficients.map((coefficient): Meaning => {
+  return fit.coefficients.map((coefficient, index): Meaning => {
     const { name, value, standardError } = coefficient;
     const { role, lag } = roleOf(name, fit.form.m, lasting, passing);
     return {
@@ -39,7 +39,7 @@ export function meanings(fit: Fit, lasting: ReadonlySet<string>, passing: Readon
       range: standardError === null ? null : [value - 1.96 * standardError, value + 1.96 * standardError],
       size: sizeOf(value, role),
       percent: parseScale(fit.scale).kind === 'log' && lag === 0 ? 100 * Math.expm1(value) : null,
-      sensitivity: sensitivity(fit, coefficient),
+      sensitivity: sensitivity(fit, coefficient, index),
     };
   });
 }
@@ -73,10 +73,10 @@ function sizeOf(value: number, role: Role): Meaning['size'] {
  * How far the first forecast's middle moves, in units, for one standard error more: by the delta method, as a whole
  * standard error can lie beyond the region where the model is stationary and invertible.
  */
-function sensitivity(fit: Fit, { name, standardError }: Coefficient): number | null {
+function sensitivity(fit: Fit, { standardError }: Coefficient, index: number): number | null {
   if (standardError === null) return null;
   const { from } = parseScale(fit.scale);
-  const at = (step: number) => from(predict(movedBy(fit, name, step), 1).mean[0]);
+  const at = (step: number) => from(predictMeans(movedBy(fit, index, step), 1)[0]);
   const step = standardError / 1000;
   try {
     const moved = ((at(step) - at(-step)) / (2 * step)) * standardError;
@@ -85,18 +85,4 @@ function sensitivity(fit: Fit, { name, standardError }: Coefficient): number | n
     // Even so small a step leaves the stationary region: there is nothing to say.
     return null;
   }
-}
-
-function movedBy(fit: Fit, name: string, step: number): Fit {
-  const family = (which: 'phi' | 'theta' | 'Phi' | 'Theta') =>
-    fit[which].map((value, i) => (name === `${which}${i + 1}` ? value + step : value));
-  return {
-    ...fit,
-    phi: family('phi'),
-    theta: family('theta'),
-    Phi: family('Phi'),
-    Theta: family('Theta'),
-    constantValue: name === 'constant' ? fit.constantValue + step : fit.constantValue,
-    effects: fit.effects.map((value, i) => (fit.regressors[i].name === name ? value + step : value)),
-  };
 }

@@ -6,7 +6,8 @@
 import type { Fit } from '../sarima/fit.js';
 import { type Prediction, predict } from '../sarima/predict.js';
 import { parseScale } from '../sarima/scale.js';
-import { normalQuantile } from '../stats/normal.js';
+import { studentQuantile } from '../stats/student.js';
+import { type Calibration, calibrate } from './calibrate.js';
 import { jointDeviates } from './paths.js';
 
 /** A sum over steps ahead (0 is the first), with what has already happened of it. */
@@ -42,6 +43,7 @@ export interface Outlook {
   readonly periods: readonly (Expectation & { readonly standardError: number })[];
   readonly totals: readonly (Span & Expectation)[];
   readonly heldAtZero: boolean;
+  readonly calibration: Calibration;
 }
 
 export const PATHS = 10_000;
@@ -56,7 +58,8 @@ export function makeOutlook(fit: Fit, options: OutlookOptions): Outlook {
   const { ahead, seed, holdAtZero, spans } = options;
   const prediction = predict(fit, ahead);
   const centres = centresOf(fit, prediction, holdAtZero);
-  const values = stepValues(fit, prediction, holdAtZero);
+  const calibration = calibrate(fit, prediction);
+  const values = stepValues(fit, prediction, calibration, holdAtZero);
   const deviates = jointDeviates(prediction.covariance, sumsOf(fit, prediction, spans), PATHS, seed);
   const matrix = arranged(values, deviates);
   return {
@@ -70,6 +73,7 @@ export function makeOutlook(fit: Fit, options: OutlookOptions): Outlook {
     })),
     totals: spans.map((span) => ({ ...span, ...expectation(summed(matrix, span).sort()) })),
     heldAtZero: holdAtZero,
+    calibration,
   };
 }
 
@@ -105,14 +109,14 @@ function centresOf(fit: Fit, { mean }: Prediction, holdAtZero: boolean): number[
 }
 
 /**
- * What each step's paths hold, the smallest first: the quantiles of its distribution at the levels (k − ½)/N, in the
- * user's units. A calibrated distribution takes its place here: `stepSpread` and `standardScores` are all there is to it.
+ * What each step's paths hold, the smallest first: the quantiles of its calibrated distribution at the levels
+ * (k − ½)/N, in the user's units.
  */
-function stepValues(fit: Fit, prediction: Prediction, holdAtZero: boolean): Float64Array[] {
+function stepValues(fit: Fit, prediction: Prediction, calibration: Calibration, holdAtZero: boolean): Float64Array[] {
   const scale = parseScale(fit.scale);
-  const scores = standardScores(scale.kind === 'plain' ? 0 : OUTERMOST);
+  const scores = standardScores(calibration.freedom, scale.kind === 'plain' ? 0 : OUTERMOST);
   return Array.from(prediction.mean, (centre, h) => {
-    const spread = stepSpread(prediction, h);
+    const spread = calibration.spread[h];
     const values = scores.map((score) => scale.from(centre + spread * score));
     if (!values.every(Number.isFinite))
       throw new Error(`scale ${fit.scale}: the range ${h + 1} periods ahead has no upper end; use scale plain`);
@@ -120,17 +124,15 @@ function stepValues(fit: Fit, prediction: Prediction, holdAtZero: boolean): Floa
   });
 }
 
-/** The spread of one step on the model's scale: the bare model's standard error. */
-function stepSpread({ standardError }: Prediction, step: number): number {
-  return standardError[step];
-}
-
-/** The quantiles at the paths' levels (k − ½)/N, held within [outermost, 1 − outermost], in spreads off the centre: normal. */
-function standardScores(outermost: number): Float64Array {
-  return Float64Array.from({ length: PATHS }, (_, k) => {
-    const level = (k + 0.5) / PATHS;
-    return normalQuantile(Math.min(Math.max(level, outermost), 1 - outermost));
-  });
+/** Student's quantiles at the paths' levels (k − ½)/N, held within [outermost, 1 − outermost]. */
+function standardScores(freedom: number, outermost: number): Float64Array {
+  const scores = new Float64Array(PATHS);
+  for (let k = 0; k < PATHS / 2; k++) {
+    const score = studentQuantile(Math.max((k + 0.5) / PATHS, outermost), freedom);
+    scores[k] = score;
+    scores[PATHS - 1 - k] = -score;
+  }
+  return scores;
 }
 
 /** The weights with which each span's sum follows the steps' deviates: how fast the scale turns back at their centres. */

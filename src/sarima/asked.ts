@@ -20,6 +20,15 @@ export interface FitOptions {
   readonly soldOut?: readonly number[];
   /** The series' season; the form's m unless given. */
   readonly season?: number;
+  /** A fit of the same form to most of the same figures: the search starts there and stays on its summit. */
+  readonly near?: Fitted;
+}
+
+interface Fitted {
+  readonly phi: readonly number[];
+  readonly theta: readonly number[];
+  readonly Phi: readonly number[];
+  readonly Theta: readonly number[];
 }
 
 /** The options with everything filled in. */
@@ -33,6 +42,8 @@ export interface Asked {
   readonly priors: Priors | null;
   readonly regressors: readonly { readonly name: string; readonly values: Float64Array }[];
   readonly soldOut: readonly number[];
+  /** φ, θ, Φ, Θ to start from; null where the search finds its own starts. */
+  readonly near: readonly number[] | null;
 }
 
 /** Throws an Error where an option can't be used. */
@@ -65,6 +76,7 @@ export function normalize(values: ArrayLike<number>, options: FitOptions): Asked
     priors: fittedBy === 'shrunk' ? (options.priors ?? defaultPriors(form, scale, constant)) : null,
     regressors: regressors.map(({ name, values: column }) => ({ name, values: Float64Array.from(column) })),
     soldOut,
+    near: options.near ? [options.near.phi, options.near.theta, options.near.Phi, options.near.Theta].flat() : null,
   };
 }
 

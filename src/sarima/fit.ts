@@ -15,11 +15,12 @@ import { type Form, formText } from './form.js';
 import { estimateCovariance } from './information.js';
 import type { Minimum } from './minimize.js';
 import { effectsCovariance, logLikelihoodAt } from './objective.js';
+import { fromCoefficients } from './partial.js';
 import { type Prepared, prepare, withoutFigures, withSeries } from './prepare.js';
 import { noPenalty, type Penalty, type Priors, penaltyOf } from './priors.js';
 import { nearlyCancels, nearUnitRoots } from './roots.js';
 import { toScale } from './scale.js';
-import { search } from './search.js';
+import { search, stay } from './search.js';
 
 export type { FitOptions, FittedBy } from './asked.js';
 export type { Prior, Priors } from './priors.js';
@@ -57,6 +58,8 @@ export interface Fit {
   readonly logLikelihood: number;
   /** What the coefficients count for: their number, or less where they are shrunk. */
   readonly effectiveCoefficients: number;
+  /** Half the priors' sum of squares at the estimates, without the ridge; 0 by maximum likelihood. */
+  readonly penalty: number;
   /** Akaike's criterion corrected for small samples; null where too few observations are left for it, and shrunk. */
   readonly aicc: number | null;
   /** Observations after differencing. */
@@ -96,7 +99,10 @@ export function fitModel(values: ArrayLike<number>, options: FitOptions): Fit {
   const penalty = priors === null ? noPenalty(columns) : penaltyOf(form, priors, constant, columns);
   const prepared = prepare(form, series, constant, regressors, penalty.ridge);
   const engine = createEngine(form, prepared, penalty);
-  const found = search(engine.arma, engine.problem, prepared.startColumns, penalty.centre);
+  const start = asked.near === null ? null : fromCoefficients(engine.arma.blocks, asked.near);
+  const found = start
+    ? stay(engine.problem, start)
+    : search(engine.arma, engine.problem, prepared.startColumns, penalty.centre);
   const demand = asked.soldOut.length > 0 ? fitDemand(form, prepared, asked.soldOut, penalty, found) : null;
   return report(asked, prepared, penalty, engine, demand?.found ?? found, demand);
 }
@@ -161,6 +167,7 @@ function report(
     effects: asked.constant ? effects.slice(1) : effects,
     innovationVariance: (sigma * unit) ** 2,
     logLikelihood,
+    penalty: penalty.fill(new Float64Array(penalty.rows), z, arma.coefficients),
     aicc: asked.fittedBy === 'shrunk' ? null : correctedCriterion(logLikelihood, estimates.length + 1, n),
     observations: n,
     ...residualsOf(exact, prepared, sigma, soldOut),

@@ -15,6 +15,30 @@ export interface Prediction {
   readonly covariance: Float64Array;
 }
 
+/** The means alone, which cost a fraction of it. */
+export function predictMeans(fit: Fit, ahead: number): Float64Array {
+  const n = fit.values.length;
+  const known = effectsOf(fit, n + ahead);
+  const { arma, s, delta, deltaLags, states } = filtered(fit, known);
+  const { r, ar, arLags } = arma;
+  const a = Float64Array.from(states[0]);
+  const mean = new Float64Array(ahead);
+  for (let h = 0; h < ahead; h++) {
+    let y = a[0];
+    for (let l = 0; l < deltaLags.length; l++) y += delta[deltaLags[l]] * a[r + deltaLags[l]];
+    mean[h] = y + known[n + h];
+    const u = a[0];
+    a.copyWithin(0, 1, r);
+    a[r - 1] = 0;
+    for (let l = 0; l < arLags.length; l++) a[arLags[l] - 1] += ar[arLags[l] - 1] * u;
+    if (s > 0) {
+      a.copyWithin(r + 1, r, r + s - 1);
+      a[r] = y;
+    }
+  }
+  return mean;
+}
+
 /** Forecasts `ahead` periods. Throws where a regressor does not reach that far. */
 export function predict(fit: Fit, ahead: number): Prediction {
   const n = fit.values.length;
@@ -76,6 +100,24 @@ export function predict(fit: Fit, ahead: number): Prediction {
     standardError[h] = Math.sqrt(covariance[h * ahead + h]);
   }
   return { mean, standardError, covariance };
+}
+
+/** The fit with one of its coefficients moved, counted as in `fit.coefficients`. */
+export function movedBy(fit: Fit, index: number, step: number): Fit {
+  const { phi, theta, Phi, Theta, constant, constantValue, effects } = fit;
+  const all = [...phi, ...theta, ...Phi, ...Theta, ...(constant ? [constantValue] : []), ...effects];
+  all[index] += step;
+  let from = 0;
+  const take = (count: number) => all.slice(from, (from += count));
+  return {
+    ...fit,
+    phi: take(phi.length),
+    theta: take(theta.length),
+    Phi: take(Phi.length),
+    Theta: take(Theta.length),
+    constantValue: constant ? take(1)[0] : 0,
+    effects: take(effects.length),
+  };
 }
 
 /** The constant's and the regressors' part of every period, on the model's scale. */

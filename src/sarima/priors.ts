@@ -124,29 +124,49 @@ export function defaultPriors(form: Form, scale: string, constant: boolean): Pri
   const { p, d, q, P, D, Q, m } = form;
   const orders = [p, d, q, P, D, Q].join();
   const isLog = scale !== 'plain';
-  const on = 'coefficient';
-  const prior = (centre: number, spread: number): Prior => ({ centre, spread, on });
-  const s = m ** -0.5;
-  const theta =
-    m === 4
-      ? { theta1: prior(-0.4, 0.3), theta2: prior(0.1, 0.2) }
-      : m === 12
-        ? { theta1: prior(-0.7, 0.1), theta2: prior(0, 0.1) }
-        : { theta1: prior(-1 + 1.2 * s, 0.4 * s), theta2: prior(0.2 * s, 0.4 * s) };
   if (orders === '1,0,2,0,1,1' && m > 1) {
-    const phi1 = prior(m === 4 ? (isLog ? 0.9 : 0.93) : m === 12 ? 0.95 : 1 - 0.14 * s, 0.02);
-    const Theta1 = prior(m === 4 ? (isLog ? -0.7 : -0.8) : m === 12 ? -0.7 : -0.75, 0.2);
-    const ridge = m === 4 ? (isLog ? 8 : 1) : m === 12 ? (isLog ? 16 : 64) : m ** 2 / 4;
-    return { coefficients: { phi1, ...theta, Theta1 }, ridge: constant ? ridge : 0 };
+    const { ridge, ...coefficients } = driftPriors(m, isLog);
+    return { coefficients, ridge: constant ? ridge : 0 };
   }
   if (orders === '0,1,2,1,0,1' && m > 1) {
+    const { theta1, theta2 } = driftPriors(m, isLog);
     const Phi1 = m === 12 ? prior(0.98, 0.05) : prior(0.97, 0.05);
     const Theta1 = m === 12 ? prior(-0.8, 0.3) : prior(-0.75, 0.25);
-    return { coefficients: { ...theta, Phi1, Theta1 }, ridge: constant ? RIDGE : 0 };
+    return { coefficients: { theta1, theta2, Phi1, Theta1 }, ridge: constant ? RIDGE : 0 };
   }
   // A level (no differences) is no drift: there is nothing that it should be pulled towards.
   return { coefficients: {}, ridge: constant && d + D > 0 ? (D > 0 ? m ** 2 / 4 : RIDGE) : 0 };
 }
+
+/** (1,0,2)x(0,1,1): tuned on the quarterly and monthly series of Makridakis et al., Journal of Forecasting 1 (1982). */
+function driftPriors(m: number, isLog: boolean) {
+  if (m === 4)
+    return {
+      phi1: prior(0.9, 0.05),
+      theta1: prior(-0.3, 0.3),
+      theta2: prior(0.1, 0.2),
+      Theta1: prior(isLog ? -0.75 : -0.85, 0.2),
+      ridge: isLog ? 4 : 1,
+    };
+  if (m === 12)
+    return {
+      phi1: prior(0.95, 0.02),
+      theta1: prior(-0.65, 0.15),
+      theta2: prior(0.1, 0.1),
+      Theta1: prior(-0.7, 0.15),
+      ridge: isLog ? 16 : 32,
+    };
+  const s = m ** -0.5;
+  return {
+    phi1: prior(1 - 0.14 * s, 0.02),
+    theta1: prior(-1 + 1.2 * s, 0.4 * s),
+    theta2: prior(0.2 * s, 0.4 * s),
+    Theta1: prior(-0.75, 0.2),
+    ridge: m ** 2 / 4,
+  };
+}
+
+const prior = (centre: number, spread: number): Prior => ({ centre, spread, on: 'coefficient' });
 
 /** A drift per period is worth so many observations of none. */
 const RIDGE = 4;

@@ -41,6 +41,15 @@ export function search(
   return { ...best, evaluations };
 }
 
+/** The summit that `start` leads to. A start on the unit circle, where nothing moves, is first brought off it. */
+export function stay(problem: Problem, start: Float64Array): Minimum {
+  return minimize(
+    problem,
+    start.map((z) => Math.min(Math.max(z, -FAR), FAR)),
+    TOLERANCE,
+  );
+}
+
 /**
  * Where a second summit is likely: an autoregressive and a moving-average root that nearly undo each other, at one of
  * several frequencies, as a real root or a pair; and the same in the seasonal polynomials.

@@ -1,0 +1,144 @@
+/**
+ * Which model for a series, why, and how it compares with others.
+ *
+ * An automatic search over orders forecasts short business series badly; a few forms, shrunk, do better. The table of
+ * candidates is there for the planner to judge by, not to choose from mechanically.
+ */
+import { besideAt, type Forecast, rollingForecasts } from '../backtest/roll.js';
+import { missOf, type TrackRecord, trackRecord } from '../backtest/track-record.js';
+import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
+import { polynomialCoefficients } from '../sarima/form.js';
+import { predictMeans } from '../sarima/predict.js';
+import { parseScale } from '../sarima/scale.js';
+import { chiSquaredUpperTail } from '../stats/chi-squared.js';
+import { ljungBoxTerms } from '../stats/portmanteau.js';
+import { type AdviceOptions, type Choice, choose, fitOptions, type Reason } from './choose.js';
+import {
+  fadingSeasonModel,
+  type Model,
+  repeatModel,
+  seasonalModel,
+  seasonlessModel,
+  unrestrictedModels,
+} from './forms.js';
+
+export interface Candidate {
+  readonly model: Model;
+  readonly isChosen: boolean;
+  /** Among models of the same differencing and scale only; null where shrunk. */
+  readonly aicc: number | null;
+  /** Over the last origins: Σ|error|/Σ|actual|, and the same for last year's figure. */
+  readonly miss: number | null;
+  readonly lastYearMiss: number | null;
+  readonly inside80: number | null;
+  /** Of the Ljung–Box test on its residuals: small where a pattern is left. */
+  readonly leftoverPattern: number | null;
+  /** The middle of each period ahead, in the user's units. */
+  readonly middles: readonly number[];
+}
+
+export interface Advice {
+  /** Goes straight into `fitModel`. */
+  readonly chosen: FitOptions;
+  readonly candidates: readonly Candidate[];
+  readonly reasons: readonly Reason[];
+  /** How the chosen model's forecasts turned out, the advice given anew at every origin; null with too little history. */
+  readonly trackRecord: TrackRecord | null;
+}
+
+/** Throws an Error where there are fewer than three figures or nothing can be fitted. */
+export function advise(values: ArrayLike<number>, options: AdviceOptions): Advice {
+  const figures = Float64Array.from(values);
+  const choice = choose(figures, options);
+  const chosen = chosenOptions(choice, options);
+  const candidates = others(choice, options).flatMap((model) => candidateOf(figures, model, options, choice));
+  return {
+    chosen,
+    candidates,
+    reasons: choice.reasons,
+    trackRecord: trackRecord(adviceForecasts(figures, options)),
+  };
+}
+
+/** The chosen model as options for `fitModel`. */
+export function chosenOptions({ model, fit }: Choice, options: AdviceOptions): FitOptions {
+  return { ...fitOptions(model, options), regressors: fit.regressors };
+}
+
+/** Forecasts from rolling origins, the advice repeated at each, so that no hindsight flatters them. */
+export function adviceForecasts(values: Float64Array, options: AdviceOptions): Forecast[] {
+  return rollingForecasts(values, (known) => adviceAt(values, known, options), rollOptions(values, options));
+}
+
+function adviceAt(values: Float64Array, known: number, options: AdviceOptions): Fit | null {
+  try {
+    return choose(values.subarray(0, known), { ...options, ...besideAt(options, known) }).fit;
+  } catch {
+    return null;
+  }
+}
+
+/** At least 8 origins where the history allows, two years' worth where that is more, and half the figures at most. */
+export function rollOptions(values: Float64Array, { ahead, season, soldOut }: AdviceOptions) {
+  const most = Math.min(Math.max(8, 2 * season), 24);
+  return { ahead, season, soldOut: soldOut ?? [], origins: Math.min(most, Math.floor(values.length / 2)) };
+}
+
+/** The chosen model first, then what it is to be compared with, each once. */
+function others({ model }: Choice, { season }: AdviceOptions): Model[] {
+  const { scale } = model;
+  const seasonal = season > 1 ? [seasonalModel(season, scale), fadingSeasonModel(season, scale)] : [];
+  const all = [
+    model,
+    ...seasonal,
+    seasonlessModel(season, scale),
+    ...unrestrictedModels(season, scale),
+    repeatModel(season, 'plain'),
+  ];
+  const key = ({ form, scale: on, constant, fittedBy }: Model) => [form, on, constant, fittedBy].join();
+  return all.filter((each, i) => all.findIndex((other) => key(other) === key(each)) === i);
+}
+
+function candidateOf(values: Float64Array, model: Model, options: AdviceOptions, choice: Choice): Candidate[] {
+  const isChosen = model === choice.model;
+  const asked = fitOptions(model, options);
+  let fit: Fit;
+  try {
+    fit = isChosen ? choice.fit : fitModel(values, asked);
+  } catch {
+    return [];
+  }
+  const again = (known: number): Fit | null => {
+    try {
+      return fitModel(values.subarray(0, known), { ...asked, ...besideAt(options, known), near: fit });
+    } catch {
+      return null;
+    }
+  };
+  const forecasts = rollingForecasts(values, again, { ...rollOptions(values, options), origins: CANDIDATE_ORIGINS });
+  const { from } = parseScale(model.scale);
+  return [
+    {
+      model,
+      isChosen,
+      aicc: fit.aicc,
+      miss: missOf(forecasts, ({ expected }) => expected),
+      lastYearMiss: missOf(forecasts, ({ lastYear }) => lastYear),
+      inside80: trackRecord(forecasts)?.inside80 ?? null,
+      leftoverPattern: leftoverOf(fit),
+      middles: Array.from(predictMeans(fit, options.ahead), from),
+    },
+  ];
+}
+
+const CANDIDATE_ORIGINS = 8;
+
+/** Ljung & Box's p-value; null with too few residuals. */
+function leftoverOf({ standardizedResiduals, form, season }: Fit): number | null {
+  const n = standardizedResiduals.filter((z) => !Number.isNaN(z)).length;
+  const k = polynomialCoefficients(form);
+  const lags = Math.max(k + 3, Math.floor(Math.min(2 * season, n / 5)));
+  if (lags >= n) return null;
+  const statistic = ljungBoxTerms(standardizedResiduals, lags).reduce((sum, term) => sum + term, 0);
+  return Number.isNaN(statistic) ? null : chiSquaredUpperTail(statistic, lags - k);
+}
