@@ -4,7 +4,7 @@
  * An automatic search over orders forecasts short business series badly; a few forms, shrunk, do better. The table of
  * candidates is there for the planner to judge by, not to choose from mechanically.
  */
-import { besideAt, type Forecast, rollingForecasts } from '../backtest/roll.js';
+import { besideAt, type Forecast, modelForecasts, originsFor, rollingForecasts } from '../backtest/roll.js';
 import { missOf, type TrackRecord, trackRecord } from '../backtest/track-record.js';
 import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
 import { polynomialCoefficients } from '../sarima/form.js';
@@ -48,15 +48,23 @@ export interface Advice {
 
 /** Throws an Error where there are fewer than three figures or nothing can be fitted. */
 export function advise(values: ArrayLike<number>, options: AdviceOptions): Advice {
+  const { chosen, candidates, reasons } = compareModels(values, options);
+  const forecasts = adviceForecasts(Float64Array.from(values), options);
+  return { chosen, candidates, reasons, trackRecord: trackRecord(forecasts) };
+}
+
+/** The recommendation beside its rivals, without its track record. Throws as `advise` does. */
+export function compareModels(
+  values: ArrayLike<number>,
+  options: AdviceOptions,
+): Omit<Advice, 'trackRecord'> & { readonly model: Model } {
   const figures = Float64Array.from(values);
   const choice = choose(figures, options);
-  const chosen = chosenOptions(choice, options);
-  const candidates = others(choice, options).flatMap((model) => candidateOf(figures, model, options, choice));
   return {
-    chosen,
-    candidates,
+    model: choice.model,
+    chosen: chosenOptions(choice, options),
+    candidates: others(choice, options).flatMap((model) => candidateOf(figures, model, options, choice)),
     reasons: choice.reasons,
-    trackRecord: trackRecord(adviceForecasts(figures, options)),
   };
 }
 
@@ -67,7 +75,13 @@ export function chosenOptions({ model, fit }: Choice, options: AdviceOptions): F
 
 /** Forecasts from rolling origins, the advice repeated at each, so that no hindsight flatters them. */
 export function adviceForecasts(values: Float64Array, options: AdviceOptions): Forecast[] {
-  return rollingForecasts(values, (known) => adviceAt(values, known, options), rollOptions(values, options));
+  const { ahead, season, soldOut = [] } = options;
+  return rollingForecasts(values, (known) => adviceAt(values, known, options), {
+    ahead,
+    season,
+    soldOut,
+    origins: originsFor(values, season),
+  });
 }
 
 function adviceAt(values: Float64Array, known: number, options: AdviceOptions): Fit | null {
@@ -76,12 +90,6 @@ function adviceAt(values: Float64Array, known: number, options: AdviceOptions): 
   } catch {
     return null;
   }
-}
-
-/** At least 8 origins where the history allows, two years' worth where that is more, and half the figures at most. */
-export function rollOptions(values: Float64Array, { ahead, season, soldOut }: AdviceOptions) {
-  const most = Math.min(Math.max(8, 2 * season), 24);
-  return { ahead, season, soldOut: soldOut ?? [], origins: Math.min(most, Math.floor(values.length / 2)) };
 }
 
 /** The chosen model first, then what it is to be compared with, each once. */
@@ -108,14 +116,8 @@ function candidateOf(values: Float64Array, model: Model, options: AdviceOptions,
   } catch {
     return [];
   }
-  const again = (known: number): Fit | null => {
-    try {
-      return fitModel(values.subarray(0, known), { ...asked, ...besideAt(options, known), near: fit });
-    } catch {
-      return null;
-    }
-  };
-  const forecasts = rollingForecasts(values, again, { ...rollOptions(values, options), origins: CANDIDATE_ORIGINS });
+  const { ahead, season, soldOut = [] } = options;
+  const forecasts = modelForecasts(values, fit, asked, { ahead, season, soldOut, origins: CANDIDATE_ORIGINS });
   const { from } = parseScale(model.scale);
   return [
     {

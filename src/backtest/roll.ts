@@ -5,7 +5,7 @@
  */
 import type { Expectation } from '../outlook/outlook.js';
 import { stepExpectations } from '../outlook/steps.js';
-import type { Fit, FitOptions } from '../sarima/fit.js';
+import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
 
 /** One forecast of one period. */
 export interface Forecast extends Expectation {
@@ -63,6 +63,31 @@ export function rollingForecasts(
     });
   }
   return forecasts;
+}
+
+/** The same model fitted again at every origin, its form kept. */
+export function modelForecasts(
+  values: Float64Array,
+  fit: Fit,
+  asked: FitOptions,
+  options: Omit<RollOptions, 'origins'> & { readonly origins?: number },
+): Forecast[] {
+  const again = (known: number): Fit | null => {
+    try {
+      return fitModel(values.subarray(0, known), { ...asked, ...besideAt(asked, known), near: fit });
+    } catch {
+      return null;
+    }
+  };
+  return rollingForecasts(values, again, {
+    ...options,
+    origins: options.origins ?? originsFor(values, options.season),
+  });
+}
+
+/** At least 8 origins where the history allows, two years' worth where that is more, and half the figures at most. */
+export function originsFor(values: Float64Array, season: number): number {
+  return Math.min(Math.max(8, Math.min(2 * season, 24)), Math.floor(values.length / 2));
 }
 
 /** What stood beside the figures when only so many of them were known. */

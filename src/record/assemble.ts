@@ -1,15 +1,20 @@
 /**
  * The upper half of the program: from a brief's inputs to its record.
  *
- *   inputs (plan, figures) -> fit -> outlook -> explain -> RECORD
+ *   inputs (plan, figures, advice) -> fit -> outlook -> explain, assumptions, track record -> RECORD
  *
  * Nothing but the inputs goes in: no file, no clock. The same inputs give the same record, today and in ten years.
  */
+
+import { adviceForecasts } from '../advice/advise.js';
+import { checkAssumptions } from '../assumptions/assumptions.js';
+import { modelForecasts } from '../backtest/roll.js';
+import { trackRecord } from '../backtest/track-record.js';
 import { periodIndex, position, yearOf } from '../calendar/calendar.js';
 import type { Context } from '../explain/context.js';
 import { explain } from '../explain/explain.js';
 import { makeOutlook, type Outlook, type Span } from '../outlook/outlook.js';
-import { type Fit, fitModel } from '../sarima/fit.js';
+import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
 import { parseScale } from '../sarima/scale.js';
 import { autocorrelations } from '../stats/autocorrelation.js';
 import { seedOf } from '../stats/generator.js';
@@ -44,8 +49,12 @@ export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
     outlook: outlookPart(outlook, inputs),
     printed: explained.printed,
     facts: explained.facts,
-    assumptions: [],
-    trackRecord: null,
+    assumptions: checkAssumptions(fit).map(({ outliers, details, ...rest }) => ({
+      ...rest,
+      details: { ...details },
+      periods: outliers.map(({ period, ...outlier }) => ({ period: periodAt(inputs, period), ...outlier })),
+    })),
+    trackRecord: trackRecordOf(fit, inputs),
     judgement: null,
     purchase: null,
     budget: null,
@@ -53,22 +62,25 @@ export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
   });
 }
 
-const fitOf = ({ figures, model, series }: BriefInputs, fittedBy = model.fittedBy): Fit => {
+function fitOptionsOf({ figures, model, series }: BriefInputs): FitOptions {
   const first = periodIndex(figures.start, series.every);
-  return fitModel(
-    figures.values.map((value) => value ?? Number.NaN),
-    {
-      form: model.form,
-      scale: model.scale,
-      constant: model.constant,
-      fittedBy,
-      priors: model.priors,
-      regressors: figures.regressors,
-      soldOut: figures.soldOut.map((period) => periodIndex(period, series.every) - first),
-      season: series.season,
-    },
+  return {
+    form: model.form,
+    scale: model.scale,
+    constant: model.constant,
+    fittedBy: model.fittedBy,
+    priors: model.priors,
+    regressors: figures.regressors,
+    soldOut: figures.soldOut.map((period) => periodIndex(period, series.every) - first),
+    season: series.season,
+  };
+}
+
+const fitOf = (inputs: BriefInputs, fittedBy = inputs.model.fittedBy): Fit =>
+  fitModel(
+    inputs.figures.values.map((value) => value ?? Number.NaN),
+    { ...fitOptionsOf(inputs), fittedBy },
   );
-};
 
 /** What maximum likelihood makes of a model that was shrunk; null where it needs more figures than there are. */
 function unrestrictedOf(fit: Fit, inputs: BriefInputs): BriefRecord['fit']['unrestricted'] {
@@ -88,6 +100,38 @@ const outlookOf = (fit: Fit, inputs: BriefInputs): Outlook =>
     holdAtZero: inputs.figures.values.every((value) => value === null || value >= 0),
     spans: [aheadSpan(inputs), ...reportingYears(inputs)],
   });
+
+/** How forecasts made the same way turned out: the model fitted again at every origin, or the advice given again. */
+function trackRecordOf(fit: Fit, inputs: BriefInputs): BriefRecord['trackRecord'] {
+  const { series, figures, model, ahead } = inputs;
+  const values = figures.values.map((value) => value ?? Number.NaN);
+  const options = {
+    season: series.season,
+    ahead,
+    scale: model.advice?.asked.scale ?? undefined,
+    constant: model.advice?.asked.constant ?? undefined,
+    fittedBy: model.advice?.asked.fittedBy ?? undefined,
+    regressors: figures.regressors,
+    soldOut: fit.soldOut,
+  };
+  const forecasts =
+    model.advice === null
+      ? modelForecasts(Float64Array.from(values), fit, fitOptionsOf(inputs), options)
+      : adviceForecasts(Float64Array.from(values), options);
+  const record = trackRecord(forecasts);
+  if (record === null) return null;
+  const nextPeriod = forecasts
+    .filter(({ step }) => step === 1)
+    .map(({ known, expected, range80, actual }) => ({ period: periodAt(inputs, known), expected, range80, actual }));
+  return {
+    ...record,
+    missByStep: [...record.missByStep],
+    lastYearMissByStep: [...record.lastYearMissByStep],
+    lastYearPlusChangeMissByStep: [...record.lastYearPlusChangeMissByStep],
+    inside80ByStep: [...record.inside80ByStep],
+    nextPeriod,
+  };
+}
 
 const aheadSpan = ({ ahead }: BriefInputs): Span => ({
   kind: 'ahead',
@@ -175,5 +219,13 @@ function outlookPart(outlook: Outlook, inputs: BriefInputs): BriefRecord['outloo
       periods: steps.map((step) => periodAt(inputs, n + step)),
     })),
     heldAtZero: outlook.heldAtZero,
+    calibration: {
+      freedom: outlook.calibration.freedom,
+      factors: {
+        ...outlook.calibration.factors,
+        estimates: [...outlook.calibration.factors.estimates],
+        horizon: [...outlook.calibration.factors.horizon],
+      },
+    },
   };
 }

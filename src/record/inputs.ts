@@ -4,6 +4,8 @@
  * filed record holds them, so it can be computed again from itself alone.
  */
 import { isDeepStrictEqual } from 'node:util';
+import { compareModels } from '../advice/advise.js';
+import type { AdviceOptions } from '../advice/choose.js';
 import { type Every, periodIndex, periodText, seasonOf } from '../calendar/calendar.js';
 import type { SeriesFigures } from '../figures/figures.js';
 import type { Plan, PlannedSeries } from '../plan/plan.js';
@@ -27,10 +29,10 @@ export function briefInputs(
 ): BriefInputs {
   const length = values.length + plan.ahead;
   const events = series.events.map((event, i) => ({ ...event, coefficient: `event${i + 1}` }));
-  const form = parseForm(series.model);
-  const scale = series.scale ?? 'plain';
-  const constant = series.constant ?? form.d + form.D === 0;
-  const fittedBy = series.fittedBy ?? 'maximum-likelihood';
+  const regressors = events.map((event) => ({
+    name: event.coefficient,
+    values: eventRegressor(event, every, start, length),
+  }));
   return {
     issued: plan.issued,
     plan: planPart(plan, templates),
@@ -49,21 +51,81 @@ export function briefInputs(
       findings: findings.map(({ id, periods, done }) => ({ id, periods: [...periods], done })),
       events: events.map(({ what, from, to, effect, coefficient }) => ({ what, from, to, effect, coefficient })),
       soldOut: [...series.soldOut],
-      regressors: events.map((event) => ({
-        name: event.coefficient,
-        values: eventRegressor(event, every, start, length),
+      regressors,
+    },
+    model:
+      series.model === 'advise'
+        ? advisedModel(series, values, { every, start, ahead: plan.ahead, regressors })
+        : plannedModel(series),
+    ahead: plan.ahead,
+  };
+}
+
+function plannedModel({ model, reason, priors, ...series }: PlannedSeries): BriefRecord['model'] {
+  const form = parseForm(model);
+  const scale = series.scale ?? 'plain';
+  const constant = series.constant ?? form.d + form.D === 0;
+  const fittedBy = series.fittedBy ?? 'maximum-likelihood';
+  return {
+    form: formText(form),
+    scale,
+    constant,
+    fittedBy,
+    priors: fittedBy === 'shrunk' ? statedPriors(form, defaultPriors(form, scale, constant), priors) : null,
+    chosenBy: 'planner',
+    reason,
+    advice: null,
+  };
+}
+
+/** What the figures come with, for advice on a model for them. */
+interface Beside {
+  readonly every: Every;
+  readonly start: string;
+  readonly ahead: number;
+  readonly regressors: readonly { readonly name: string; readonly values: readonly number[] }[];
+}
+
+/** The plan's series as the advice takes it. */
+export function adviceOptions(
+  { scale, constant, fittedBy, soldOut }: PlannedSeries,
+  { every, start, ahead, regressors }: Beside,
+): AdviceOptions {
+  const first = periodIndex(start, every);
+  return {
+    season: seasonOf(every),
+    ahead,
+    scale: scale ?? undefined,
+    constant: constant ?? undefined,
+    fittedBy: fittedBy ?? undefined,
+    regressors,
+    soldOut: soldOut.map((period) => periodIndex(period, every) - first),
+  };
+}
+
+function advisedModel(series: PlannedSeries, values: readonly (number | null)[], beside: Beside): BriefRecord['model'] {
+  const figures = values.map((value) => value ?? Number.NaN);
+  const { model, reasons, candidates } = compareModels(figures, adviceOptions(series, beside));
+  const { scale, constant, fittedBy } = series;
+  return {
+    form: model.form,
+    scale: model.scale,
+    constant: model.constant,
+    fittedBy: model.fittedBy,
+    priors: model.priors === null ? null : statedPriors(parseForm(model.form), model.priors, null),
+    chosenBy: 'advice',
+    reason: series.reason,
+    advice: {
+      asked: { scale, constant, fittedBy },
+      reasons: reasons.map(({ id, numbers }) => ({ id, numbers: { ...numbers } })),
+      candidates: candidates.map(({ model: each, middles, ...rest }) => ({
+        form: each.form,
+        scale: each.scale,
+        constant: each.constant,
+        fittedBy: each.fittedBy,
+        ...rest,
       })),
     },
-    model: {
-      form: formText(form),
-      scale,
-      constant,
-      fittedBy,
-      priors: fittedBy === 'shrunk' ? statedPriors(form, defaultPriors(form, scale, constant), series.priors) : null,
-      chosenBy: 'planner',
-      reason: series.reason,
-    },
-    ahead: plan.ahead,
   };
 }
 

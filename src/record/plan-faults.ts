@@ -22,7 +22,6 @@ export function planFaults(plan: Plan, series: PlannedSeries, figures: SeriesFig
   const rest = [
     aheadFault(plan, figures),
     modelFault(series, figures.every),
-    laterFault(series),
     priorsFault(series),
     ...series.soldOut.map((period) => soldOutFault(period, figures)),
   ];
@@ -69,15 +68,10 @@ export function seasonFault({ m }: Form, model: string, every: Every): string | 
   return `model ${shown(model)} has a season of ${m} periods, but figures that come every ${every} have ${season} a year; ${form}`;
 }
 
-/** What the plan may ask for and this version does not do, where leaving it aside would make the brief wrong. */
-function laterFault({ model }: PlannedSeries): string | null {
-  return model === 'advise'
-    ? 'model "advise" comes with a later version; write a model, such as (0,1,1)x(0,1,1)4'
-    : null;
-}
-
 function priorsFault({ model, priors, constant }: PlannedSeries): string | null {
-  if (priors === null || model === 'advise') return null;
+  if (priors === null) return null;
+  if (model === 'advise')
+    return 'priors belong to a model of your own; write it in place of advise, or leave priors out';
   const form = parseForm(model);
   try {
     penaltyOf(form, statedPriors(form, NO_PRIORS, priors), constant ?? false, 1);

@@ -179,6 +179,33 @@ const outlookTotal = z.strictObject({
   range95: range,
 });
 
+const advised = z.strictObject({
+  form: z.string(),
+  scale: z.string(),
+  constant: z.boolean(),
+  fittedBy: z.enum(['maximum-likelihood', 'shrunk']),
+});
+
+const advice = z.strictObject({
+  /** What the plan settled beforehand; null where it left it to the advice. */
+  asked: z.strictObject({
+    scale: z.string().nullable(),
+    constant: z.boolean().nullable(),
+    fittedBy: z.enum(['maximum-likelihood', 'shrunk']).nullable(),
+  }),
+  reasons: z.array(z.strictObject({ id: z.string(), numbers: z.record(z.string(), number) })),
+  candidates: z.array(
+    advised.extend({
+      isChosen: z.boolean(),
+      aicc: missable,
+      miss: missable,
+      lastYearMiss: missable,
+      inside80: missable,
+      leftoverPattern: missable,
+    }),
+  ),
+});
+
 const printedRow = z.strictObject({
   expected: number,
   range80: range,
@@ -213,6 +240,29 @@ const printed = z.strictObject({
     lastYear: missable,
     change: z.int().nullable(),
   }),
+});
+
+const trackRecord = z.strictObject({
+  origins: count,
+  /** Forecasts that could be scored. */
+  count,
+  /** Σ|error| / Σ|actual| of all forecasts; null where every actual is zero. */
+  miss: missable,
+  lastYearMiss: missable,
+  lastYearPlusChangeMiss: missable,
+  best: z.enum(['model', 'last-year', 'last-year-plus-change']),
+  /** Above zero where the forecasts were too low. */
+  bias: missable,
+  mase: number,
+  inside80: number,
+  inside95: number,
+  intervalScore: number,
+  missByStep: z.array(missable),
+  lastYearMissByStep: z.array(missable),
+  lastYearPlusChangeMissByStep: z.array(missable),
+  inside80ByStep: z.array(missable),
+  /** One step ahead, the latest last: what was expected, and what happened. */
+  nextPeriod: z.array(z.strictObject({ period, expected: number, range80: range, actual: number })),
 });
 
 const priors = z.strictObject({
@@ -328,7 +378,10 @@ export const recordSchema = z.strictObject({
     /** What the estimates were pulled towards; null by maximum likelihood. */
     priors: priors.nullable(),
     chosenBy: z.enum(['planner', 'advice']),
+    /** The planner's own words. */
     reason: z.string().nullable(),
+    /** What was advised, why, and against what; null where the planner chose. */
+    advice: advice.nullable(),
   }),
   fit: z.strictObject({
     coefficients: z.array(coefficient),
@@ -361,6 +414,16 @@ export const recordSchema = z.strictObject({
     totals: z.array(outlookTotal),
     /** True where the paths were held at zero or above. */
     heldAtZero: z.boolean(),
+    /** How the ranges were widened: Student's degrees of freedom, and factors on the standard error. */
+    calibration: z.strictObject({
+      freedom: number,
+      factors: z.strictObject({
+        freedom: number,
+        recent: number,
+        estimates: z.array(number),
+        horizon: z.array(number),
+      }),
+    }),
   }),
   printed,
   facts,
@@ -370,9 +433,22 @@ export const recordSchema = z.strictObject({
       status: z.enum(['holds', 'doubtful', 'fails', 'untested']),
       statistic: missable,
       pValue: missable,
+      /** Further numbers that a sentence may need, by name. */
+      details: z.record(z.string(), number),
+      /** Single periods that stand out, on the model's scale, and what each does to the next forecast, in units. */
+      periods: z.array(
+        z.strictObject({
+          period,
+          kind: z.enum(['additive', 'level-shift']),
+          size: number,
+          t: number,
+          forecastChange: number,
+        }),
+      ),
     }),
   ),
-  trackRecord: z.null(),
+  /** How forecasts made the same way turned out; null with too little history. */
+  trackRecord: trackRecord.nullable(),
   judgement: z.null(),
   purchase: z.null(),
   budget: z.null(),

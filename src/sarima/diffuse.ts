@@ -26,6 +26,13 @@ export interface DiffuseStart {
 
 const NOTHING = 1e-9;
 
+/** The start of a series whose first s figures are all known: these settle everything, and no error of theirs counts. */
+export function knownStart(series: Float64Array, s: number): DiffuseStart {
+  const kind = Uint8Array.from(series, (y, t) => (t < s ? DIFFUSE : Number.isNaN(y) ? MISSING : ORDINARY));
+  const ordinary = kind.reduce((count, each) => count + (each === ORDINARY ? 1 : 0), 0);
+  return { kind, spread: [], direction: [], ordinary, settled: true };
+}
+
 /** `delta`: yₜ = uₜ + Σ delta[k−1] yₜ₋ₖ. */
 export function diffuseStart(series: Float64Array, delta: Float64Array): DiffuseStart {
   const n = series.length;

@@ -11,7 +11,7 @@
  */
 import type { Arma } from './arma.js';
 import { type AutocovarianceSpace, createAutocovarianceSpace, firstColumn } from './autocovariance.js';
-import { DIFFUSE, type DiffuseStart, diffuseStart, MISSING, ORDINARY } from './diffuse.js';
+import { DIFFUSE, type DiffuseStart, diffuseStart, knownStart, MISSING, ORDINARY } from './diffuse.js';
 import type { Innovations } from './likelihood.js';
 import { differenceWeights } from './polynomial.js';
 
@@ -59,8 +59,8 @@ export function createFilter(arma: Arma, data: readonly Float64Array[], traced =
   const n = data[0].length;
   const s = delta.length;
   const size = arma.r + s;
-  const diffuse = diffuseStart(data[0], delta);
   const from = traced || data[0].subarray(0, s).some(Number.isNaN) ? 0 : s;
+  const diffuse = from === s ? knownStart(data[0], s) : diffuseStart(data[0], delta);
   return {
     arma,
     data,

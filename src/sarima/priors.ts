@@ -158,9 +158,9 @@ function driftPriors(m: number, isLog: boolean) {
     };
   const s = m ** -0.5;
   return {
-    phi1: prior(1 - 0.14 * s, 0.02),
-    theta1: prior(-1 + 1.2 * s, 0.4 * s),
-    theta2: prior(0.2 * s, 0.4 * s),
+    phi1: prior(1 - 0.19 * s, 0.1 * s),
+    theta1: prior(-1 + 1.3 * s, 0.55 * s),
+    theta2: prior(0.25 * s, 0.4 * s),
     Theta1: prior(-0.75, 0.2),
     ridge: m ** 2 / 4,
   };

@@ -93,5 +93,5 @@ test('one rule in the season’s length leads from the quarters’ centres to th
   const at = (m: number) => defaultPriors(parseForm(`(1,0,2)x(0,1,1)${m}`), 'plain', true).coefficients.phi1.centre;
   expect(at(2)).toBeLessThan(at(4));
   expect(at(4)).toBeLessThan(at(12));
-  expect(at(12)).toBeLessThan(at(13));
+  expect(at(13)).toBeCloseTo(at(12), 2);
 });
