@@ -20,10 +20,15 @@ export async function tasksOf({ plan, wanted, figures, theme, archive, options }
   const tasks: Task[] = [];
   const unchanged: string[] = [];
   const refused: string[] = [];
+  const failures: { name: string; message: string }[] = [];
   for (const series of wanted) {
     const found = figures.get(series.slug);
     if (found === undefined) continue;
-    const inputs = briefInputs(plan, series, found, theme.sha256);
+    const inputs = inputsOrWhyNot(plan, series, found, theme.sha256);
+    if (typeof inputs === 'string') {
+      failures.push({ name: series.name, message: inputs });
+      continue;
+    }
     const there = options.trial ? null : await filedBrief(archive, plan.issued, series.slug);
     const change = there === null ? null : changeOf(there, inputs);
     if (there !== null && change === null && 'record' in there.filed) {
@@ -36,7 +41,16 @@ export async function tasksOf({ plan, wanted, figures, theme, archive, options }
     throw new ArchiveError(
       `${refused.join('\n')}\nWrite it anew with --replace, which keeps the old files, or give the plan another date under "issued".`,
     );
-  return { tasks, unchanged };
+  return { tasks, unchanged, failures };
+}
+
+/** The inputs, or what is wrong where no model can be advised. */
+function inputsOrWhyNot(...of: Parameters<typeof briefInputs>): BriefInputs | string {
+  try {
+    return briefInputs(...of);
+  } catch (error) {
+    return error instanceof Error ? error.message : String(error);
+  }
 }
 
 /** Why the filed brief is not the one that the plan asks for, or null where it is. */

@@ -69,14 +69,15 @@ export async function writeBriefs(planPath: string, options: WriteOptions = {}):
 async function write(work: Work): Promise<WriteResult> {
   const { archive, options, report } = work;
   const folder = folderOf(work);
-  const { tasks, unchanged } = await tasksOf(work);
+  const { tasks, unchanged, failures } = await tasksOf(work);
   const coverKinds = options.trial ? [] : await filedKinds(archive, folder, 'cover');
   if (tasks.length === 0 && coverKinds.includes('html')) {
-    return { files: filesToOpen(work, []), written: [], unchanged, failures: [] };
+    return { files: filesToOpen(work, failures), written: [], unchanged, failures };
   }
   const printer = options.pdf === false ? null : await openPrinter({ warn: report.message });
   try {
     const made = await makeBriefs(work, tasks, printer);
+    made.failures.unshift(...failures);
     options.signal?.throwIfAborted();
     const stands = made.records.size + unchanged.length > 0;
     if (made.records.size > 0 || (stands && !coverKinds.includes('html'))) {

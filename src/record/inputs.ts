@@ -157,12 +157,16 @@ export const inputsOfRecord = ({ issued, plan, series, figures, model, outlook }
 
 /**
  * Whether two briefs say the same: the same date, figures, model and plan. The templates and the program's version are
- * left out of it, since a brief that was issued stands as it was issued, whatever program is installed later.
+ * left out of it, since a brief that was issued stands as it was issued, whatever program is installed later; so is
+ * what was advised, which follows from the rest.
  */
-export const sameInputs = (a: BriefInputs, b: BriefInputs): boolean =>
-  isDeepStrictEqual(withoutTemplates(a), withoutTemplates(b));
+export const sameInputs = (a: BriefInputs, b: BriefInputs): boolean => isDeepStrictEqual(asAsked(a), asAsked(b));
 
-const withoutTemplates = (inputs: BriefInputs) => ({ ...inputs, plan: { ...inputs.plan, templates: '' } });
+const asAsked = ({ model, ...inputs }: BriefInputs) => ({
+  ...inputs,
+  plan: { ...inputs.plan, templates: '' },
+  model: model.advice === null ? model : { asked: model.advice.asked, reason: model.reason },
+});
 
 /** The text of the period so many after the first. */
 export const periodAt = (inputs: BriefInputs, index: number): string =>
