@@ -25,10 +25,15 @@ export function checkNormality(fit: Fit): Assumption {
 export function jarqueBera(values: Float64Array): { statistic: number; skewness: number; excessKurtosis: number } {
   const n = values.length;
   const mean = values.reduce((sum, x) => sum + x, 0) / n;
-  const moment = (power: number) => values.reduce((sum, x) => sum + (x - mean) ** power, 0) / n;
-  const variance = moment(2);
-  const skewness = moment(3) / variance ** 1.5;
-  const excessKurtosis = moment(4) / variance ** 2 - 3;
+  let [m2, m3, m4] = [0, 0, 0];
+  for (const x of values) {
+    const square = (x - mean) ** 2;
+    m2 += square / n;
+    m3 += (square * (x - mean)) / n;
+    m4 += (square * square) / n;
+  }
+  const skewness = m3 / m2 ** 1.5;
+  const excessKurtosis = m4 / m2 ** 2 - 3;
   return { statistic: (n / 6) * (skewness ** 2 + excessKurtosis ** 2 / 4), skewness, excessKurtosis };
 }
 

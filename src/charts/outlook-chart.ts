@@ -20,7 +20,7 @@ export interface OutlookWords {
 
 export const WIDTH = 658;
 /** The plot's height: less where the table under it is long, so that both fit on the page. */
-const heightFor = (ahead: number): number => Math.max(104, 156 - 13 * Math.max(0, ahead - 4));
+const heightFor = (ahead: number): number => Math.max(104, 140 - 13 * Math.max(0, ahead - 4));
 /** The widest that a period's name or number on the rail is. */
 const RAIL_LABEL = 45;
 /** Room at the right for the bands' labels. */

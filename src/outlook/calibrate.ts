@@ -33,6 +33,13 @@ const LEAST_FREEDOM = 3;
 /** The coefficients' part is believed up to this many times the bare variance. */
 const MOST_ESTIMATES = 2;
 
+/** The bare model's normal ranges, as textbooks have them: to compare with. */
+export function uncalibrated({ standardError }: Prediction): Calibration {
+  const ones = Array.from(standardError, () => 1);
+  const factors = { freedom: 1, recent: 1, estimates: ones, horizon: ones };
+  return { spread: standardError, freedom: Number.POSITIVE_INFINITY, factors };
+}
+
 export function calibrate(fit: Fit, prediction: Prediction): Calibration {
   const { standardError } = prediction;
   const n = fit.observations;

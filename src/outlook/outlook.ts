@@ -25,6 +25,8 @@ export interface OutlookOptions {
   /** Hold the paths at zero or above. */
   readonly holdAtZero: boolean;
   readonly spans: readonly Span[];
+  /** How each step's distribution is made; `calibrate` unless given. */
+  readonly calibration?: (fit: Fit, prediction: Prediction) => Calibration;
 }
 
 export interface Expectation {
@@ -56,9 +58,10 @@ const OUTERMOST = 0.001;
  */
 export function makeOutlook(fit: Fit, options: OutlookOptions): Outlook {
   const { ahead, seed, holdAtZero, spans } = options;
+  const calibrated = options.calibration ?? calibrate;
   const prediction = predict(fit, ahead);
   const centres = centresOf(fit, prediction, holdAtZero);
-  const calibration = calibrate(fit, prediction);
+  const calibration = calibrated(fit, prediction);
   const values = stepValues(fit, prediction, calibration, holdAtZero);
   const deviates = jointDeviates(prediction.covariance, sumsOf(fit, prediction, spans), PATHS, seed);
   const matrix = arranged(values, deviates);

@@ -14,6 +14,7 @@ import { type Formats, formatsOf } from './formats.js';
 import { madeOf, meaningRows, pullTable, sumTable } from './how-made.js';
 import { answerSentence, caveatSentences, countedPeriods, reasons } from './sentences.js';
 import type { Theme } from './theme.js';
+import { assumptionRows, trustSentences } from './trust.js';
 
 export interface BriefOptions {
   /** SHA-256 of the record's file. */
@@ -47,7 +48,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     picture: await pictureOf(record, theme, formats, every),
     figures: figuresTable(record, theme, formats, every),
     reasons: reasons(record, theme, formats),
-    untested: theme.say('trust.untested', { every: theme.say(`every.${series.every}.other`) }),
+    trust: trustSentences(record, theme, formats).join(' '),
     caveats: caveatSentences(record, theme, formats),
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
     sum: sumTable(record, theme, formats),
@@ -56,6 +57,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     weights: await weightsOf(record, theme, formats),
     echo: await echoOf(record, theme, formats),
     checks: await checksCharts(record, theme, formats),
+    assumed: assumptionRows(record, theme, formats),
     data: checksOf(record, theme, formats),
     past: pastTable(record, theme, formats),
     file: fileLines(record, theme, formats, options),

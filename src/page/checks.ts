@@ -4,7 +4,7 @@ import type { BriefRecord } from '../record/record.js';
 import type { Formats } from './formats.js';
 import type { Theme } from './theme.js';
 
-export function checksOf({ figures, fit, outlook, series }: BriefRecord, theme: Theme, formats: Formats) {
+export function checksOf({ figures, fit, outlook, series, trackRecord }: BriefRecord, theme: Theme, formats: Formats) {
   const list = (periods: readonly string[]) => periods.map((period) => formats.period(period, 'short')).join('; ');
   const found = figures.findings.map(({ id, periods }) => {
     const key = `checks.data.${id}`;
@@ -24,11 +24,30 @@ export function checksOf({ figures, fit, outlook, series }: BriefRecord, theme: 
           }),
         ];
   const data = [...found, ...soldOut, ...events];
-  const ranges = theme.say('checks.ranges.text', {
-    paths: formats.number(outlook.paths, 0),
-    seed: String(outlook.seed),
-    every: theme.say(`every.${series.every}.other`),
-  });
+  const { freedom, factors } = outlook.calibration;
+  const first = factors.freedom * factors.recent * factors.estimates[0] * factors.horizon[0];
+  const ranges = [
+    theme.say('checks.ranges.text', {
+      paths: formats.number(outlook.paths, 0),
+      seed: String(outlook.seed),
+      every: theme.say(`every.${series.every}.other`),
+      freedom: formats.number(freedom, 0),
+      times: formats.number(first, 2),
+      fitted: formats.number(factors.freedom, 2),
+      estimates: formats.number(factors.estimates[0], 2),
+      recent: formats.number(factors.recent, 2),
+      horizon: formats.number(factors.horizon[0], 2),
+    }),
+    ...(trackRecord === null
+      ? []
+      : [
+          theme.say('checks.ranges.did', {
+            count: formats.number(trackRecord.count, 0),
+            inside80: formats.share(trackRecord.inside80),
+            inside95: formats.share(trackRecord.inside95),
+          }),
+        ]),
+  ].join(' ');
   return {
     done: data.length === 0 ? [theme.say('checks.data.nothing')] : data,
     ranges: outlook.heldAtZero ? `${ranges} ${theme.say('checks.ranges.held')}` : ranges,

@@ -89,7 +89,10 @@ function peakName(peak: readonly number[], season: number, formats: Formats): st
   return `${start}\u2009–\u2009${end}`;
 }
 
-/** Worst first; what the figures can't know comes last. */
+/** More would bury the worst. */
+const MOST_CAVEATS = 2;
+
+/** The worst first; what the figures can't know comes last. */
 export function caveatSentences({ facts }: BriefRecord, theme: Theme, formats: Formats): string[] {
   const said = facts.caveats.flatMap(({ id, count, share, what, from, to }): string[] => {
     const key = `caveats.${id}`;
@@ -102,5 +105,5 @@ export function caveatSentences({ facts }: BriefRecord, theme: Theme, formats: F
     if (theme.has(key)) return [theme.say(key, facts)];
     return theme.has(`${key}.other`) ? [theme.say(`${key}.${plural(formats, count ?? 0)}`, facts)] : [];
   });
-  return [...said, theme.say('caveats.outside')];
+  return [...said.slice(0, MOST_CAVEATS), theme.say('caveats.outside')];
 }

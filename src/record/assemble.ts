@@ -9,7 +9,7 @@
 import { adviceForecasts } from '../advice/advise.js';
 import { checkAssumptions } from '../assumptions/assumptions.js';
 import { modelForecasts } from '../backtest/roll.js';
-import { trackRecord } from '../backtest/track-record.js';
+import { trackRecord as scored } from '../backtest/track-record.js';
 import { periodIndex, position, yearOf } from '../calendar/calendar.js';
 import type { Context } from '../explain/context.js';
 import { explain } from '../explain/explain.js';
@@ -18,6 +18,7 @@ import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
 import { parseScale } from '../sarima/scale.js';
 import { autocorrelations } from '../stats/autocorrelation.js';
 import { seedOf } from '../stats/generator.js';
+import { caveatsWith } from './caveats.js';
 import { type BriefInputs, periodAt } from './inputs.js';
 import { type BriefRecord, recordSchema } from './record.js';
 
@@ -35,6 +36,8 @@ export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
   const fit = fitOf(inputs);
   const outlook = outlookOf(fit, inputs);
   const explained = explain(fit, outlook, contextOf(inputs));
+  const assumptions = assumptionsOf(fit, inputs);
+  const trackRecord = trackRecordOf(fit, inputs);
   return recordSchema.parse({
     format: 'seasonbrief-record/1',
     brief: `${origin.folder}/${inputs.series.slug}`,
@@ -48,13 +51,9 @@ export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
     equation: explained.equation,
     outlook: outlookPart(outlook, inputs),
     printed: explained.printed,
-    facts: explained.facts,
-    assumptions: checkAssumptions(fit).map(({ outliers, details, ...rest }) => ({
-      ...rest,
-      details: { ...details },
-      periods: outliers.map(({ period, ...outlier }) => ({ period: periodAt(inputs, period), ...outlier })),
-    })),
-    trackRecord: trackRecordOf(fit, inputs),
+    facts: { ...explained.facts, caveats: caveatsWith(explained.facts.caveats, assumptions, trackRecord) },
+    assumptions,
+    trackRecord,
     judgement: null,
     purchase: null,
     budget: null,
@@ -101,6 +100,13 @@ const outlookOf = (fit: Fit, inputs: BriefInputs): Outlook =>
     spans: [aheadSpan(inputs), ...reportingYears(inputs)],
   });
 
+const assumptionsOf = (fit: Fit, inputs: BriefInputs): BriefRecord['assumptions'] =>
+  checkAssumptions(fit).map(({ outliers, details, ...rest }) => ({
+    ...rest,
+    details: { ...details },
+    periods: outliers.map(({ period, ...outlier }) => ({ period: periodAt(inputs, period), ...outlier })),
+  }));
+
 /** How forecasts made the same way turned out: the model fitted again at every origin, or the advice given again. */
 function trackRecordOf(fit: Fit, inputs: BriefInputs): BriefRecord['trackRecord'] {
   const { series, figures, model, ahead } = inputs;
@@ -118,7 +124,7 @@ function trackRecordOf(fit: Fit, inputs: BriefInputs): BriefRecord['trackRecord'
     model.advice === null
       ? modelForecasts(Float64Array.from(values), fit, fitOptionsOf(inputs), options)
       : adviceForecasts(Float64Array.from(values), options);
-  const record = trackRecord(forecasts);
+  const record = scored(forecasts);
   if (record === null) return null;
   const nextPeriod = forecasts
     .filter(({ step }) => step === 1)

@@ -107,8 +107,7 @@ export function movedBy(fit: Fit, index: number, step: number): Fit {
   const { phi, theta, Phi, Theta, constant, constantValue, effects } = fit;
   const all = [...phi, ...theta, ...Phi, ...Theta, ...(constant ? [constantValue] : []), ...effects];
   all[index] += step;
-  let from = 0;
-  const take = (count: number) => all.slice(from, (from += count));
+  const take = (count: number) => all.splice(0, count);
   return {
     ...fit,
     phi: take(phi.length),

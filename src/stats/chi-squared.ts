@@ -4,7 +4,7 @@ import { logGamma } from './log-gamma.js';
 const ENOUGH = 1e-16;
 
 /**
- * The probability of a value above x with `freedom` degrees of freedom, to about 13 digits: the regularized incomplete
+ * The probability of a value above x with `freedom` degrees of freedom, to about 12 digits: the regularized incomplete
  * gamma function Q(freedom/2, x/2), by its series below the mean and by Legendre's continued fraction above it
  * (Abramowitz & Stegun, "Handbook of Mathematical Functions", 1964, 6.5.29 and 6.5.31).
  */

@@ -6,7 +6,7 @@ const ENOUGH = 1e-15;
 const TINY = 1e-300;
 
 /**
- * The probability of a value above x with `above` and `below` degrees of freedom, to about 13 digits: the regularized
+ * The probability of a value above x with `above` and `below` degrees of freedom, to about 11 digits: the regularized
  * incomplete beta function I(below/2, above/2) at below/(below + above·x) (Abramowitz & Stegun, "Handbook of
  * Mathematical Functions", 1964, 26.6.2).
  */

@@ -4,7 +4,7 @@ import { logGamma } from './log-gamma.js';
 import { normalQuantile } from './normal.js';
 
 /**
- * Its quantile at probability p with `freedom` degrees of freedom (1 or more, whole or not), to about 12 digits: Newton's
+ * Its quantile at probability p with `freedom` degrees of freedom (1 or more, whole or not; Infinity is the normal), to about 12 digits: Newton's
  * steps on the distribution function, from the normal quantile's expansion (Abramowitz & Stegun, "Handbook of
  * Mathematical Functions", 1964, 26.7.5).
  */
@@ -12,6 +12,7 @@ export function studentQuantile(p: number, freedom: number): number {
   if (!(p > 0 && p < 1)) throw new Error(`a quantile needs a probability between 0 and 1, not ${p}`);
   if (!(freedom >= 1)) throw new Error(`degrees of freedom are 1 or more, not ${freedom}`);
   if (p === 0.5) return 0;
+  if (freedom === Number.POSITIVE_INFINITY) return normalQuantile(p);
   if (p > 0.5) return -studentQuantile(1 - p, freedom);
   if (freedom === 1) return -1 / Math.tan(Math.PI * p);
   const logScale = logGamma((freedom + 1) / 2) - logGamma(freedom / 2) - 0.5 * Math.log(freedom * Math.PI);

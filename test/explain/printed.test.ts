@@ -15,6 +15,11 @@ const outlookOf = (rows: readonly ReturnType<typeof row>[], totalHalf: number): 
   seed: 0,
   paths: 0,
   matrix: new Float64Array(0),
+  calibration: {
+    spread: new Float64Array(0),
+    freedom: 12,
+    factors: { freedom: 1, recent: 1, estimates: [], horizon: [] },
+  },
   periods: rows,
   totals: [
     {

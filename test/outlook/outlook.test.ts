@@ -1,7 +1,8 @@
 import { describe, expect, test } from 'vitest';
+import { uncalibrated } from '../../src/outlook/calibrate.js';
 import { forecast, makeOutlook } from '../../src/outlook/outlook.js';
 import { fitModel } from '../../src/sarima/fit.js';
-import { predict } from '../../src/sarima/predict.js';
+import { type Prediction, predict } from '../../src/sarima/predict.js';
 import { createGenerator } from '../../src/stats/generator.js';
 import { normalQuantile } from '../../src/stats/normal.js';
 
@@ -17,11 +18,14 @@ const options = {
   spans: [{ kind: 'ahead' as const, year: null, known: 0, steps }],
 };
 
+/** The bare model's own ranges, for which there are closed forms. */
+const bare = { ...options, calibration: (_: unknown, prediction: Prediction) => uncalibrated(prediction) };
+
 describe('the matrix of paths', () => {
   test('on the plain scale each step has the bare model’s mean, and normal quantiles by its standard error', () => {
     const plain = fitted('plain');
     const { mean, standardError } = predict(plain, 4);
-    makeOutlook(plain, options).periods.forEach(({ expected, middle, range80, range95 }, h) => {
+    makeOutlook(plain, bare).periods.forEach(({ expected, middle, range80, range95 }, h) => {
       expect(expected).toBeCloseTo(mean[h], 8);
       expect(middle).toBe(mean[h]);
       for (const [range, level] of [
@@ -38,7 +42,7 @@ describe('the matrix of paths', () => {
   test('on the log scale the middle is exp of the centre and the mean that of a lognormal, to the clipped tails', () => {
     const log = fitted('log');
     const { mean, standardError } = predict(log, 4);
-    makeOutlook(log, options).periods.forEach(({ expected, middle }, h) => {
+    makeOutlook(log, bare).periods.forEach(({ expected, middle }, h) => {
       expect(middle).toBeCloseTo(Math.exp(mean[h]), 10);
       const lognormal = Math.exp(mean[h] + standardError[h] ** 2 / 2);
       expect(Math.abs(expected / lognormal - 1)).toBeLessThan(standardError[h] * 1e-3);
@@ -59,7 +63,7 @@ describe('the matrix of paths', () => {
     const { mean, covariance } = predict(plain, 4);
     const spread = Math.sqrt(covariance.reduce((sum, value) => sum + value, 0));
     const centre = mean.reduce((sum, value) => sum + value, 0);
-    const [total] = makeOutlook(plain, options).totals;
+    const [total] = makeOutlook(plain, bare).totals;
     expect(Math.abs(total.range80[1] - (centre + normalQuantile(0.9) * spread))).toBeLessThan(0.01 * spread);
     expect(Math.abs(total.range95[0] - (centre - normalQuantile(0.975) * spread))).toBeLessThan(0.02 * spread);
   });
@@ -95,7 +99,7 @@ describe('the matrix of paths', () => {
   test('the paths have the joint covariance that the filter gives', () => {
     const plain = fitted('plain');
     const { mean, covariance } = predict(plain, 4);
-    const { matrix, paths } = makeOutlook(plain, { ...options, holdAtZero: false });
+    const { matrix, paths } = makeOutlook(plain, { ...bare, holdAtZero: false });
     for (let i = 0; i < 4; i++)
       for (let j = 0; j <= i; j++) {
         let sum = 0;

@@ -38,10 +38,6 @@ test('an event with no figure in its periods has no effect to measure', () => {
   expect(faults({ more: event('2024-Q1', '2024-Q1') }, values)[0]?.message).toMatch(/no figure in its periods/);
 });
 
-test('what is asked for and not there yet is refused, never passed over', () => {
-  expect(faults({ model: 'advise' })[0]?.message).toMatch(/write a model, such as \(0,1,1\)x\(0,1,1\)4/);
-});
-
 test('a sold-out period needs a figure, and priors need a coefficient of the model', () => {
   expect(faults({ more: '    sold-out: [2024-Q1]\n' })).toEqual([]);
   expect(faults({ more: '    sold-out: [2031-Q1]\n' })[0]?.message).toMatch(/2031-Q1 lies outside the figures/);

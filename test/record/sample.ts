@@ -47,6 +47,7 @@ export function sampleRecord(changes: SampleChanges = {}): BriefRecord {
       priors: null,
       chosenBy: 'planner',
       reason: null,
+      advice: null,
     },
     fit: {
       coefficients: [],
@@ -101,6 +102,7 @@ export function sampleRecord(changes: SampleChanges = {}): BriefRecord {
       ],
       totals: [],
       heldAtZero: true,
+      calibration: { freedom: 12, factors: { freedom: 1, recent: 1, estimates: [1], horizon: [1] } },
     },
     printed: {
       places: 0,
