@@ -136,9 +136,9 @@ function candidateOf(values: Float64Array, model: Model, options: AdviceOptions,
 const CANDIDATE_ORIGINS = 8;
 
 /** Ljung & Box's p-value; null with too few residuals. */
-function leftoverOf({ standardizedResiduals, form, season }: Fit): number | null {
+function leftoverOf({ standardizedResiduals, form, season, effectiveCoefficients }: Fit): number | null {
   const n = standardizedResiduals.filter((z) => !Number.isNaN(z)).length;
-  const k = polynomialCoefficients(form);
+  const k = Math.round(Math.min(polynomialCoefficients(form), effectiveCoefficients));
   const lags = Math.max(k + 3, Math.floor(Math.min(2 * season, n / 5)));
   if (lags >= n) return null;
   const statistic = ljungBoxTerms(standardizedResiduals, lags).reduce((sum, term) => sum + term, 0);

@@ -8,7 +8,7 @@ import { type Assumption, assumption, FEWEST_RESIDUALS, present, statusOf, untes
 
 /**
  * The portmanteau test of Ljung & Box, "On a measure of lack of fit in time series models", Biometrika 65 (1978), less a
- * degree of freedom for each coefficient; and the seasonal lag by itself, with one degree of freedom. The worse of the
+ * degree of freedom for each coefficient, or for what the coefficients count for where they are shrunk; and the seasonal lag by itself, with one degree of freedom. The worse of the
  * two counts. After a seasonal coefficient the seasonal lag varies less than that (McLeod, "On the distribution of
  * residual autocorrelations in Box–Jenkins models", Journal of the Royal Statistical Society B 40, 1978): lenient there.
  */
@@ -16,7 +16,7 @@ export function checkLeftover(fit: Fit): Assumption {
   const residuals = fit.standardizedResiduals;
   const season = fit.season;
   const n = present(residuals).length;
-  const k = polynomialCoefficients(fit.form);
+  const k = Math.round(Math.min(polynomialCoefficients(fit.form), fit.effectiveCoefficients));
   const lags = Math.max(k + 3, Math.floor(Math.min(2 * season, n / 5)));
   if (n < FEWEST_RESIDUALS || lags >= n) return untested('leftover-pattern', { residuals: n });
 
