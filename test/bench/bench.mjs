@@ -12,6 +12,7 @@ import { readFileSync } from 'node:fs';
 import path from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { parseArgs } from 'node:util';
+import { advise } from '../../dist/advice/advise.js';
 import { fitModel } from '../../dist/sarima/fit.js';
 import { parseForm } from '../../dist/sarima/form.js';
 import { createGenerator } from '../../dist/stats/generator.js';
@@ -148,6 +149,23 @@ for (const { brackets, gaps } of groups) {
   });
 }
 console.table(table);
+console.table(
+  [
+    [4, 44],
+    [12, 110],
+  ].map(([season, length]) => {
+    const { normal } = createGenerator(season);
+    const x = [];
+    for (let t = 0; t < length; t++) x.push((t < season ? 200 + 20 * (t % season) : x[t - season]) + 5 * normal());
+    const once = () => {
+      const started = performance.now();
+      advise(x, { season, ahead: season });
+      return performance.now() - started;
+    };
+    const times = Array.from({ length: 20 }, once).sort((a, b) => a - b);
+    return { advice: `season ${season}, ${length} figures`, 'ms (middle of 20)': times[10].toFixed(1) };
+  }),
+);
 if (reference === null) console.log('Rscript is not on this machine: nothing to compare with.');
 else if (options.list)
   for (const [i, { id, form, scale, gaps, brackets, m }] of cases.entries()) {
