@@ -133,7 +133,7 @@ function candidateOf(values: Float64Array, model: Model, options: AdviceOptions,
   ];
 }
 
-const CANDIDATE_ORIGINS = 8;
+const CANDIDATE_ORIGINS = 6;
 
 /** Ljung & Box's p-value; null with too few residuals. */
 function leftoverOf({ standardizedResiduals, form, season, effectiveCoefficients }: Fit): number | null {

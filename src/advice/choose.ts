@@ -54,7 +54,9 @@ const IN_FAVOUR_OF_LOG = 6;
 
 /** Logarithms that missed by this many times as much in the back-test are not taken. */
 const VETO = 1.2;
-const VETO_ORIGINS = 8;
+const VETO_ORIGINS = 4;
+/** By as much as this the likelihood alone decides. */
+const DECISIVE = 10;
 
 /** Throws an Error with fewer than three figures, or none that a model can be fitted to. */
 export function choose(values: Float64Array, options: AdviceOptions): Choice {
@@ -116,9 +118,8 @@ function byScale(values: Float64Array, options: AdviceOptions, model: (scale: st
   const numbers = { difference };
   const favour = options.season >= 8 ? IN_FAVOUR_OF_LOG : 0;
   if (difference + favour <= 0) return { ...plain, reasons: [method, { id: 'plain-likelier', numbers }] };
-  const ratio = missRatio(values, log, plain, options);
-  if (ratio > VETO && options.season < 8)
-    return { ...plain, reasons: [method, { id: 'log-missed-more', numbers: { difference, ratio } }] };
+  const ratio = options.season < 8 && difference < DECISIVE ? missRatio(values, log, plain, options) : 1;
+  if (ratio > VETO) return { ...plain, reasons: [method, { id: 'log-missed-more', numbers: { difference, ratio } }] };
   return { ...log, reasons: [method, { id: 'log-likelier', numbers }] };
 }
 
@@ -189,6 +190,7 @@ function missAt(values: Float64Array, { model, fit }: Choice, known: number, opt
       ...fitOptions(model, options),
       ...besideAt(options, known),
       near: fit,
+      standardErrors: false,
     });
     const { from } = parseScale(model.scale);
     const ahead = Math.min(options.season, values.length - known);

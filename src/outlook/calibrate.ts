@@ -87,8 +87,9 @@ function estimateVariances(fit: Fit, ahead: number): Float64Array {
   const { covariance } = fit;
   const variances = new Float64Array(ahead);
   if (covariance === null) return variances;
+  const base = predictMeans(fit, ahead);
   const slopes = covariance.map((row, i) =>
-    row[i] > 0 ? slopeOf(fit, i, 0.05 * Math.sqrt(row[i]), ahead) : new Float64Array(ahead),
+    row[i] > 0 ? slopeOf(fit, base, i, 0.05 * Math.sqrt(row[i])) : new Float64Array(ahead),
   );
   for (let h = 0; h < ahead; h++)
     covariance.forEach((row, i) => {
@@ -100,13 +101,12 @@ function estimateVariances(fit: Fit, ahead: number): Float64Array {
 }
 
 /** ∂mean/∂coefficient by step, by a forward or, where that leaves the stationary region, a backward difference. */
-function slopeOf(fit: Fit, index: number, by: number, ahead: number): Float64Array {
-  const base = predictMeans(fit, ahead);
+function slopeOf(fit: Fit, base: Float64Array, index: number, by: number): Float64Array {
   for (const step of [by, -by])
     try {
-      return predictMeans(movedBy(fit, index, step), ahead).map((value, h) => (value - base[h]) / step);
+      return predictMeans(movedBy(fit, index, step), base.length).map((value, h) => (value - base[h]) / step);
     } catch {
       // Not stationary there: the other side is.
     }
-  return new Float64Array(ahead);
+  return new Float64Array(base.length);
 }

@@ -22,6 +22,8 @@ export interface FitOptions {
   readonly season?: number;
   /** A fit of the same form to most of the same figures: the search starts there and stays on its summit. */
   readonly near?: Fitted;
+  /** Unless given, yes. Without, the covariance is null and the fit takes half the time. */
+  readonly standardErrors?: boolean;
 }
 
 interface Fitted {
@@ -44,6 +46,7 @@ export interface Asked {
   readonly soldOut: readonly number[];
   /** φ, θ, Φ, Θ to start from; null where the search finds its own starts. */
   readonly near: readonly number[] | null;
+  readonly standardErrors: boolean;
 }
 
 /** Throws an Error where an option can't be used. */
@@ -77,6 +80,7 @@ export function normalize(values: ArrayLike<number>, options: FitOptions): Asked
     regressors: regressors.map(({ name, values: column }) => ({ name, values: Float64Array.from(column) })),
     soldOut,
     near: options.near ? [options.near.phi, options.near.theta, options.near.Phi, options.near.Theta].flat() : null,
+    standardErrors: options.standardErrors ?? true,
   };
 }
 

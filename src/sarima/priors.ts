@@ -142,7 +142,7 @@ export function defaultPriors(form: Form, scale: string, constant: boolean): Pri
 function driftPriors(m: number, isLog: boolean) {
   if (m === 4)
     return {
-      phi1: prior(0.9, 0.05),
+      phi1: prior(0.88, 0.03),
       theta1: prior(-0.3, 0.3),
       theta2: prior(0.1, 0.2),
       Theta1: prior(isLog ? -0.75 : -0.85, 0.2),

@@ -41,12 +41,15 @@ export function search(
   return { ...best, evaluations };
 }
 
+/** Near a fit that is known: so little log-likelihood is less than a fiftieth of any estimate's standard error. */
+const NEARLY = 1e-4;
+
 /** The summit that `start` leads to. A start on the unit circle, where nothing moves, is first brought off it. */
 export function stay(problem: Problem, start: Float64Array): Minimum {
   return minimize(
     problem,
     start.map((z) => Math.min(Math.max(z, -FAR), FAR)),
-    TOLERANCE,
+    NEARLY,
   );
 }
 
