@@ -47,6 +47,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     answer: answerSentence(record, theme, formats),
     picture: await pictureOf(record, theme, formats, every),
     figures: figuresTable(record, theme, formats, every),
+    isLong: outlook.periods.length > MANY,
     reasons: reasons(record, theme, formats),
     trust: trustSentences(record, theme, formats).join(' '),
     caveats: caveatSentences(record, theme, formats),
@@ -65,6 +66,9 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   };
   return withType(theme.brief(view));
 }
+
+/** More rows than this are set closer, so that page 1 stays one page. */
+const MANY = 6;
 
 async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, every: string) {
   const { series, figures, outlook, printed } = record;
