@@ -11,7 +11,7 @@ import { checksOf, pastTable } from './checks.js';
 import { pageStyle, plainText, withType } from './document.js';
 import { equationHtml } from './equation.js';
 import { type Formats, formatsOf } from './formats.js';
-import { madeOf, meaningRows, pullTable, sumTable } from './how-made.js';
+import { madeOf, meaningRows, sumTable } from './how-made.js';
 import { answerSentence, caveatSentences, countedPeriods, reasons } from './sentences.js';
 import type { Theme } from './theme.js';
 import { assumptionRows, trustSentences } from './trust.js';
@@ -54,7 +54,6 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
     sum: sumTable(record, theme, formats),
     meanings: meaningRows(record, theme, formats),
-    pull: pullTable(record, theme, formats),
     weights: await weightsOf(record, theme, formats),
     echo: await echoOf(record, theme, formats),
     checks: await checksCharts(record, theme, formats),

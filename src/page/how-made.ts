@@ -132,14 +132,18 @@ function backName(
 const eventName = ({ figures }: BriefRecord, coefficient: string | null): string =>
   figures.events.find((event) => event.coefficient === coefficient)?.what ?? coefficient ?? '';
 
+/** With what each was pulled towards, and where it would stand without, where the estimates are shrunk. */
 export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats) {
-  const { equation, fit, outlook, series } = record;
+  const { equation, fit, model, outlook, series } = record;
+  const { priors } = model;
   return {
     title: theme.say('meaning.title'),
+    isPulled: priors !== null,
     heads: [
       theme.say('meaning.symbol'),
       theme.say('meaning.value'),
       theme.say('meaning.likely'),
+      ...(priors === null ? [] : [theme.say('meaning.towards'), theme.say('meaning.free')]),
       theme.say('meaning.says'),
       theme.say('meaning.moves', { period: formats.period(outlook.periods[0].period, 'short') }),
     ],
@@ -154,6 +158,8 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
           meaning.range === null
             ? theme.say('meaning.unknown')
             : theme.say('figures.and', { low: number(meaning.range[0]), high: number(meaning.range[1]) }),
+        towards: pullText(priors?.coefficients[fit.coefficients[i].name], theme, number),
+        free: fit.unrestricted === null ? '–' : number(fit.unrestricted[i].value),
         says: meaningSentence(record, meaning, fit.coefficients[i].symbol, theme, formats),
         moves:
           moves === null
@@ -161,34 +167,24 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
             : `${formats.number(Math.abs(moves), Math.max(series.places, Math.abs(moves) < 1 ? 1 : 0))} ${series.unit}`,
       };
     }),
+    pulled:
+      priors === null
+        ? null
+        : theme.say('meaning.pulled', {
+            count: formats.number(fit.coefficients.length, 0),
+            effective: formats.number(fit.effectiveCoefficients, 1),
+          }),
   };
 }
 
-/** Towards what shrunk estimates were pulled, and where they would stand without; null by maximum likelihood. */
-export function pullTable({ model, fit }: BriefRecord, theme: Theme, formats: Formats) {
-  const { priors } = model;
-  if (priors === null) return null;
-  const number = (value: number) => formats.number(value, 2);
-  const stated = fit.coefficients.flatMap(({ name, symbol, value }, i) => {
-    const prior = priors.coefficients[name];
-    return prior === undefined ? [] : [{ symbol, value, prior, free: fit.unrestricted?.[i].value ?? null }];
-  });
-  return {
-    title: theme.say('pull.title'),
-    lead: theme.say('pull.lead', {
-      count: formats.number(fit.coefficients.length, 0),
-      effective: formats.number(fit.effectiveCoefficients, 1),
-    }),
-    heads: ['symbol', 'used', 'towards', 'spread', 'free'].map((key) => theme.say(`pull.${key}`)),
-    rows: stated.map(({ symbol, value, prior, free }) => ({
-      symbol,
-      used: number(value),
-      towards:
-        prior.on === 'partial' ? theme.say('pull.partial', { centre: number(prior.centre) }) : number(prior.centre),
-      spread: number(prior.spread),
-      free: free === null ? theme.say('pull.unknown') : number(free),
-    })),
-  };
+function pullText(
+  prior: NonNullable<BriefRecord['model']['priors']>['coefficients'][string] | undefined,
+  theme: Theme,
+  number: (value: number) => string,
+): string {
+  if (prior === undefined) return '–';
+  const facts = { centre: number(prior.centre), spread: number(prior.spread) };
+  return theme.say(prior.on === 'partial' ? 'meaning.pull-partial' : 'meaning.pull', facts);
 }
 
 /** Two places for numbers about one, fewer for large ones. */
