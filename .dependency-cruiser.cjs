@@ -49,13 +49,13 @@ module.exports = {
       name: 'charts-see-record-types-and-calendar',
       severity: 'error',
       from: { path: room('charts') },
-      to: { path: '^src/', pathNot: ['^src/charts/', '^src/calendar/', '^src/record/(record|cover)\\.ts$'] },
+      to: { path: '^src/', pathNot: ['^src/charts/', '^src/calendar/', '^src/record/(record|cover|choice)\\.ts$'] },
     },
     {
       name: 'pages-see-record-types-calendar-and-charts',
       severity: 'error',
       from: { path: room('page') },
-      to: { path: '^src/', pathNot: ['^src/(page|charts|calendar)/', '^src/record/(record|cover)\\.ts$'] },
+      to: { path: '^src/', pathNot: ['^src/(page|charts|calendar)/', '^src/record/(record|cover|choice)\\.ts$'] },
     },
     {
       name: 'entry-points-are-not-imported',

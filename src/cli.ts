@@ -34,6 +34,16 @@ program
   });
 
 program
+  .command('advise')
+  .description('say which model suits each series, and why; writes a choice sheet for each')
+  .argument('[plan]', 'the plan', 'plan.yaml')
+  .option('--out <folder>', "the archive's folder (default: out, beside the plan)")
+  .option('--only <name>', 'this series only; may be given several times', collect, [])
+  .option('--quiet', 'say nothing unless something is wrong')
+  .addHelpText('after', '\nExample:\n  seasonbrief advise plan.yaml --only "Antifouling paint"')
+  .action(advise);
+
+program
   .command('write')
   .description('write the briefs, the cover, the records and the ledger')
   .argument('[plan]', 'the plan', 'plan.yaml')
@@ -45,6 +55,21 @@ program
   .option('--quiet', 'say nothing unless something is wrong')
   .addHelpText('after', '\nExample:\n  seasonbrief write plan.yaml --only "Antifouling paint" --trial')
   .action(write);
+
+interface AdviseArguments {
+  readonly out?: string;
+  readonly only: readonly string[];
+  readonly quiet?: boolean;
+}
+
+async function advise(plan: string, { quiet = false, ...options }: AdviseArguments): Promise<void> {
+  const { writeChoiceSheets } = await import('./commands/advise.js');
+  const { report, end } = reporter(quiet);
+  const { table, advised, failures } = await writeChoiceSheets(plan, { ...options, report }).finally(end);
+  if (!quiet && advised.length > 0)
+    for (const line of [...table, '', ...advised.map(({ file }) => shortPath(file))]) out(line);
+  tellFailures(failures, advised.length);
+}
 
 /** The user or the system asked the program to end. */
 class Interrupted extends Error {
@@ -79,10 +104,14 @@ async function write(plan: string, { quiet = false, ...options }: WriteArguments
     err('Open:');
     for (const file of result.files) out(shortPath(file));
   }
-  const { failures, written } = result;
-  if (failures.length > 0) err(`${failures.length} of ${failures.length + written.length} failed:`);
+  tellFailures(result.failures, result.written.length);
+}
+
+function tellFailures(failures: readonly { readonly name: string; readonly message: string }[], done: number): void {
+  if (failures.length === 0) return;
+  err(`${failures.length} of ${failures.length + done} failed:`);
   for (const { name, message } of failures) err(`series "${name}" failed: ${message}`);
-  if (failures.length > 0) process.exitCode = SOME_FAILED;
+  process.exitCode = SOME_FAILED;
 }
 
 /** A bar on a terminal, a line a series elsewhere. */

@@ -2,6 +2,7 @@
 
 export { type Advice, advise, type Candidate } from './advice/advise.js';
 export type { AdviceOptions, Reason } from './advice/choose.js';
+export { type Advised, type ChoiceOptions, type ChoiceResult, writeChoiceSheets } from './commands/advise.js';
 export type { Reporter, WriteOptions } from './commands/work.js';
 export { type WriteResult, writeBriefs } from './commands/write.js';
 export { type ForecastPeriod, forecast } from './outlook/outlook.js';

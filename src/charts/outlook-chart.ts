@@ -4,6 +4,7 @@ import { periodIndex, periodText, position } from '../calendar/calendar.js';
 import type { BriefRecord } from '../record/record.js';
 import { draw, labelled } from './draw.js';
 import { ACCENT, BAND, HAIRLINE, INK, LABEL, PAPER, QUIET } from './look.js';
+import { openTextWidth } from './metrics.js';
 import { niceTicks, tickPlaces } from './ticks.js';
 
 export interface OutlookWords {
@@ -21,8 +22,8 @@ export interface OutlookWords {
 export const WIDTH = 658;
 /** The plot's height: less where the table under it is long, so that both fit on the page. */
 const heightFor = (ahead: number): number => Math.max(104, 140 - 13 * Math.max(0, ahead - 4));
-/** The widest that a period's name or number on the rail is. */
-const RAIL_LABEL = 45;
+/** Between two names or numbers on the rail. */
+const RAIL_GAP = 7;
 /** Room at the right for the bands' labels. */
 const LABELS = 74;
 
@@ -119,8 +120,16 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
   const point = (fields: string) => ({ x, y: { ...y, field: fields } });
   // Neighbours on the rail stand in two rows where one is too narrow; with many periods every second, third … is named.
   const perStep = (WIDTH - LABELS - 44) / (steps + 0.8);
-  const rows = perStep < RAIL_LABEL ? 2 : 1;
-  const railStep = Math.ceil(RAIL_LABEL / (perStep * rows));
+  const width = await openTextWidth();
+  const widest = Math.max(
+    ...ahead.flatMap(({ name, label }) => [
+      width(name, { family: 'sans', size: LABEL }),
+      width(label, { family: 'sans', size: LABEL, weight: 600 }),
+    ]),
+  );
+  const railLabel = widest + RAIL_GAP;
+  const rows = perStep < railLabel ? 2 : 1;
+  const railStep = Math.ceil(railLabel / (perStep * rows));
   const rail = ahead.map((each, h) => ({ ...each, row: Math.floor(h / railStep) % rows, isNamed: h % railStep === 0 }));
   const railRows = Array.from({ length: rows }, (_, row) => rail.filter((each) => each.row === row && each.isNamed));
 

@@ -23,6 +23,8 @@ export interface Reporter {
   readonly progress: (done: number, of: number, what: string) => void;
 }
 
+export const SILENT: Reporter = { message: () => undefined, progress: () => undefined };
+
 export interface Work {
   readonly plan: Plan;
   readonly wanted: readonly PlannedSeries[];

@@ -4,12 +4,8 @@
  *   plan, figures -> checks -> archive (lock, recover) -> records -> pages -> file all at once
  */
 import { dirname, join, resolve } from 'node:path';
-import { readFigures, type SeriesFigures } from '../figures/figures.js';
-import { type Fault, InputError } from '../figures/input-error.js';
-import { suggestion } from '../figures/nearest.js';
 import { openPrinter } from '../page/print.js';
-import { loadTheme } from '../page/theme.js';
-import { type Plan, type PlannedSeries, readPlan } from '../plan/plan.js';
+import type { Plan, PlannedSeries } from '../plan/plan.js';
 import {
   type Archive,
   closeArchive,
@@ -17,14 +13,15 @@ import {
   filedFor,
   filedKinds,
   fileTrial,
+  keepTemplates,
   openArchive,
 } from '../record/archive.js';
 import { ArchiveError } from '../record/archive-error.js';
-import { planFaults } from '../record/plan-faults.js';
-import { checkModel } from './check-model.js';
 import { makeBriefs, stageCover } from './make-briefs.js';
+import { planTheme } from './plan-theme.js';
+import { readPlanned } from './read-planned.js';
 import { tasksOf } from './tasks.js';
-import { folderOf, type Reporter, type Work, type WriteOptions } from './work.js';
+import { folderOf, type Reporter, SILENT, type Work, type WriteOptions } from './work.js';
 
 export interface WriteResult {
   /** Absolute paths of the files to open, the cover first. */
@@ -35,23 +32,13 @@ export interface WriteResult {
   readonly failures: readonly { readonly name: string; readonly message: string }[];
 }
 
-const SILENT: Reporter = { message: () => undefined, progress: () => undefined };
-
 /** Throws an InputError or ArchiveError, with nothing written, where plan, figures or archive can't be used. */
 export async function writeBriefs(planPath: string, options: WriteOptions = {}): Promise<WriteResult> {
   const report = options.report ?? SILENT;
-  const plan = await readPlan(planPath, checkModel);
-  const wanted = chosen(plan, options.only ?? []);
-  const figures = await readFigures({
-    ...plan.figures,
-    issued: plan.issued,
-    yearStarts: plan.yearStarts,
-    wanted,
-  });
-  checkTogether(plan, wanted, figures);
+  const { plan, wanted, figures } = await readPlanned(planPath, options.only ?? []);
   for (const series of wanted) sayWhatIsLeftAside(series, report);
 
-  const theme = await loadTheme(plan.locale);
+  const theme = await planTheme(plan);
   const folder = resolve(options.out ?? join(dirname(resolve(plan.path)), 'out'));
   const archive = await openArchive(folder);
   try {
@@ -83,6 +70,7 @@ async function write(work: Work): Promise<WriteResult> {
     if (made.records.size > 0 || (stands && !coverKinds.includes('html'))) {
       const stale = await stageCover(work, made, coverKinds, printer);
       options.signal?.throwIfAborted();
+      await keepTemplates(archive, work.theme.sha256, work.theme.own);
       if (options.trial) await fileTrial(archive);
       else await fileBriefs(archive, folder, made.entries, [...made.removals, ...stale]);
     }
@@ -96,35 +84,6 @@ async function write(work: Work): Promise<WriteResult> {
   } finally {
     await printer?.close();
   }
-}
-
-function chosen(plan: Plan, only: readonly string[]): readonly PlannedSeries[] {
-  const names = plan.series.map(({ name }) => name);
-  const unknown = only.filter((name) => !names.includes(name));
-  if (unknown.length > 0) {
-    const there = names.map((name) => `"${name}"`).join(', ');
-    throw new InputError(
-      unknown.map((name) => ({
-        file: plan.path,
-        line: null,
-        column: null,
-        message: `there is no series "${name}" to write${suggestion(name, names) || `; the plan has ${there}`}`,
-      })),
-    );
-  }
-  return only.length === 0 ? plan.series : plan.series.filter(({ name }) => only.includes(name));
-}
-
-function checkTogether(
-  plan: Plan,
-  wanted: readonly PlannedSeries[],
-  figures: ReadonlyMap<string, SeriesFigures>,
-): void {
-  const faults: Fault[] = wanted.flatMap((series) => {
-    const found = figures.get(series.slug);
-    return found === undefined ? [] : planFaults(plan, series, found);
-  });
-  if (faults.length > 0) throw new InputError(faults);
 }
 
 /** One archive holds the briefs of one firm. */

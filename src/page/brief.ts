@@ -38,6 +38,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
       of: theme.say('of'),
     }),
     trial: options.trial ? theme.say('trial') : null,
+    logo: theme.logo,
     preparedFor: plan.preparedFor,
     heading: plan.heading,
     issued: formats.date(record.issued),

@@ -24,6 +24,7 @@ export async function renderCover(cover: CoverRecord, theme: Theme, { trial }: {
       of: theme.say('of'),
     }),
     trial: trial ? theme.say('trial') : null,
+    logo: theme.logo,
     preparedFor: plan.preparedFor,
     heading: plan.heading,
     issued: date,

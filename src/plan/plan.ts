@@ -30,6 +30,9 @@ export interface Plan {
   /** Periods to look ahead. */
   readonly ahead: number;
   readonly aheadAt: Place;
+  /** Absolute path of a folder of the user's own templates, or null. */
+  readonly templates: string | null;
+  readonly templatesAt: Place;
   readonly figures: PlannedFigures;
   readonly series: readonly PlannedSeries[];
 }
@@ -193,6 +196,8 @@ const planOf = (plan: PlanText, path: string, document: Located): Plan => {
     // The rules have seen to it that one of the two is given.
     ahead: plan.ahead ?? seasonOf(plan.figures.every ?? 'year'),
     aheadAt: document.placeOf(['ahead'], 'value'),
+    templates: plan.templates === undefined ? null : resolve(folder, plan.templates),
+    templatesAt: document.placeOf(['templates'], 'value'),
     figures: figuresOf(plan.figures, folder, document),
     series: plan.series.map((series, i) => seriesOf(series, slugs[i], ['series', i], document)),
   };

@@ -243,6 +243,7 @@ export const planSchema = z.strictObject(
     paper: oneOf(['A4', 'Letter']).default('A4').describe('the paper of the PDF'),
     'year-starts': month.default(1).describe('the first month of the reporting year'),
     ahead: wholeFrom(1, 156).optional().describe('periods to look ahead; left out: one year’s worth'),
+    templates: line.optional().describe('a folder of your own pages, words, style and logo, as seen from the plan'),
     figures: figures.describe('where the past figures are'),
     series: z
       .array(series, { error: 'should be a list of series, each starting with "- name:"' })

@@ -3,12 +3,13 @@
  *
  *   openArchive (lock, recover) -> filedBrief? -> stageBrief, setAside … -> fileBriefs (journal, ledger) -> closeArchive
  */
-import { mkdir, readdir, readFile, rmdir, stat } from 'node:fs/promises';
+import { randomUUID } from 'node:crypto';
+import { mkdir, readdir, readFile, rename, rm, rmdir, stat } from 'node:fs/promises';
 import { dirname, join, resolve } from 'node:path';
 import { ArchiveError, archiveError, errorCode } from './archive-error.js';
 import { sha256 } from './canonical.js';
 import { type CoverRecord, coverSchema } from './cover.js';
-import { whereThere } from './disk.js';
+import { whereThere, writeDurably } from './disk.js';
 import { abandon, commit, type Recovery, recover, type Staging, stage, stagingOf } from './journal.js';
 import { chainedRows, type LedgerEntry } from './ledger.js';
 import { type Lock, releaseLock, takeLock } from './lock.js';
@@ -197,6 +198,41 @@ export async function fileBriefs(
 /** Puts the staged trial in place of the last one. */
 export async function fileTrial(archive: Archive): Promise<void> {
   await inArchive(archive, (staging) => commit(staging, { moves: ['trial'], removals: [], ledgerRows: [] }));
+}
+
+/** Keeps a user's own templates under their SHA-256, once for each version that was used. */
+export async function keepTemplates(
+  { folder }: Archive,
+  sha256: string,
+  files: ReadonlyMap<string, Uint8Array>,
+): Promise<void> {
+  const kept = join(folder, 'templates', sha256);
+  if (files.size === 0 || (await whereThere(async () => (await stat(kept)).isDirectory(), false))) return;
+  const beside = `${kept}-${randomUUID()}`;
+  try {
+    for (const [name, content] of files) await writeDurably(join(beside, name), content);
+    await rename(beside, kept);
+  } catch (error) {
+    await rm(beside, { recursive: true, force: true });
+    throw archiveError(error, folder);
+  }
+}
+
+/**
+ * Writes a choice sheet in place of the one before and gives its path. A working paper needs neither journal nor lock:
+ * one renaming puts it in its place whole.
+ */
+export async function writeChoiceSheet(folder: string, slug: string, html: string): Promise<string> {
+  const file = join(folder, 'choice', `${slug}.html`);
+  const beside = `${file}-${randomUUID()}`;
+  try {
+    await writeDurably(beside, html);
+    await rename(beside, file);
+    return file;
+  } catch (error) {
+    await rm(beside, { force: true });
+    throw archiveError(error, folder);
+  }
 }
 
 async function inArchive(archive: Archive, step: (staging: Staging) => Promise<void>): Promise<void> {
