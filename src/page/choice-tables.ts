@@ -52,9 +52,9 @@ export function candidatesTable({ sheet, formats, say, miss, share }: ChoiceWord
       ],
     })),
     notes: [
-      say('candidates.tested'),
+      ...(sheet.candidates.some(({ miss: own }) => own !== null) ? [say('candidates.tested')] : []),
       ...(sheet.candidates.length === 1 ? [] : [`${say('candidates.aicc.lead')} ${compared}`]),
-      say('candidates.leftover-note'),
+      ...(sheet.candidates.some(({ leftover }) => leftover !== null) ? [say('candidates.leftover-note')] : []),
     ],
   };
 }

@@ -52,6 +52,7 @@ export async function renderChoice(sheet: ChoiceSheet, theme: Theme): Promise<st
     profile: await profilePart(words),
     levels: await levelsPart(words),
     tests: testSentences(words),
+    isTested: sheet.differencing.before.kpss !== null || sheet.season !== null,
     candidates: candidatesTable(words),
     forecasts: { ...(await forecastsPart(words)), table: forecastsTable(words) },
     track: { text: trackSentences(words).join(' '), table: trackTable(words) },

@@ -136,18 +136,34 @@ const useFaces = async (page: Page): Promise<void> => {
 
 /**
  * Two prints of a document differ in their dates and in the identifiers of the tags, which count on from print to
- * print. Both are replaced by text of the same length, so that no offset in the file moves. The identifiers keep
- * their order, in which the PDF sorts them.
+ * print and now and then change places with a neighbour's. All are replaced by text of the same length, so that no
+ * offset in the file moves: the identifiers are numbered in the order of the tags, and the tree that finds a tag by its
+ * identifier (PDF 1.7, 7.9.6) is put in their order again.
  */
 export const sameBytes = (pdf: Uint8Array, issued: string): Uint8Array => {
   const text = Buffer.from(pdf).toString('latin1');
   const date = `${issued.replaceAll('-', '')}000000+00'00'`;
   const dated = text.replace(/\/(CreationDate|ModDate) \(D:\d{14}[+-]\d\d'\d\d'\)/g, `/$1 (D:${date})`);
   const identifier = /(?<!\\)\(node(\d{8})\)/g;
-  const found = [...new Set([...dated.matchAll(identifier)].map((match) => match[1]))].sort();
+  const leaves = dated.match(TREE_LEAF)?.length ?? 0;
+  const tagged = [...dated.matchAll(/\/ID \(node(\d{8})\)/g)].map((match) => match[1]);
+  const known = [...dated.matchAll(identifier)].map((match) => match[1]).sort();
+  // A tree of several leaves is left in its own order: sorting could not keep their lengths.
+  const found = [...new Set(leaves > 1 ? known : [...tagged, ...known])];
   const rank = new Map(found.map((digits, i) => [digits, String(i + 1).padStart(8, '0')]));
-  return Buffer.from(
-    dated.replace(identifier, (_, digits: string) => `(node${rank.get(digits)})`),
-    'latin1',
-  );
+  const numbered = dated.replace(identifier, (_, digits: string) => `(node${rank.get(digits)})`);
+  const sorted = numbered.replace(TREE_LEAF, (leaf) => {
+    const entries = leaf.match(TREE_ENTRY) ?? [];
+    const inOrder = [...entries].sort();
+    const [first, last] = [inOrder[0], inOrder[inOrder.length - 1]].map((entry) =>
+      entry.slice(0, '(node00000001)'.length),
+    );
+    return leaf
+      .replace(TREE_ENTRY, () => inOrder.shift() ?? '')
+      .replace(/^\/Limits \[.*?\]/, `/Limits [${first} ${last}]`);
+  });
+  return Buffer.from(sorted, 'latin1');
 };
+
+const TREE_ENTRY = /\(node\d{8}\) \d+ 0 R/g;
+const TREE_LEAF = /\/Limits \[\(node\d{8}\) \(node\d{8}\)\]\s*\/Names \[(?:\(node\d{8}\) \d+ 0 R\s*)+\]/g;

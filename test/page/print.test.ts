@@ -107,8 +107,21 @@ test('text is as wide on the page as it was measured', async () => {
   expect(drawn.reduce((sum, width) => sum + width, 0)).toBeCloseTo(measured, 0);
 });
 
-test('identifiers keep their order and their length', () => {
-  const pdf = Buffer.from("(node00000120) (node00000031) (node00000120) /ModDate (D:20200102030405+00'00')");
-  const same = Buffer.from(sameBytes(pdf, issued)).toString();
-  expect(same).toBe("(node00000002) (node00000001) (node00000002) /ModDate (D:20261005000000+00'00')");
+test('identifiers are numbered in the order of the tags, and the tree that finds them put in that order', () => {
+  const print = (first: string, second: string) => {
+    const [low, high] = [first, second].sort();
+    const place = (id: string) => (id === first ? '67 0 R' : '69 0 R');
+    return Buffer.from(
+      `/ID (node${first}) /ID (node${second}) /Headers [(node${second})] /Limits [(node${low}) (node${high})]
+/Names [(node${low}) ${place(low)} (node${high}) ${place(high)}] /ModDate (D:20200102030405+00'00')`,
+    );
+  };
+  const same = [print('00000031', '00000120'), print('00000120', '00000031')].map((pdf) =>
+    Buffer.from(sameBytes(pdf, issued)).toString(),
+  );
+  expect(same[0]).toBe(
+    `/ID (node00000001) /ID (node00000002) /Headers [(node00000002)] /Limits [(node00000001) (node00000002)]
+/Names [(node00000001) 67 0 R (node00000002) 69 0 R] /ModDate (D:20261005000000+00'00')`,
+  );
+  expect(same[1]).toBe(same[0]);
 });
