@@ -8,5 +8,6 @@ export default defineConfig({
     exclude: ['test/proof/**'],
     testTimeout: 120_000,
     hookTimeout: 180_000,
+    maxWorkers: 2,
   },
 });
