@@ -21,9 +21,11 @@ export interface OutlookWords {
 
 export const WIDTH = 658;
 /** The plot's height: less where the table under it is long, so that both fit on the page. */
-const heightFor = (ahead: number): number => Math.max(104, 140 - 13 * Math.max(0, ahead - 4));
-/** Between two names or numbers on the rail. */
-const RAIL_GAP = 7;
+const heightFor = (ahead: number, paper: BriefRecord['plan']['paper']): number =>
+  Math.max(paper === 'Letter' ? 84 : 104, (paper === 'Letter' ? 116 : 140) - 13 * Math.max(0, ahead - 4));
+/** The size of the names on the rail, and the room between two of them. */
+const RAIL_NAME = LABEL - 1.5;
+const RAIL_GAP = 2;
 /** Room at the right for the bands' labels. */
 const LABELS = 74;
 
@@ -40,7 +42,7 @@ const shownValues = (values: readonly (number | null)[], count: number): number[
 export async function outlookChart(record: BriefRecord, words: OutlookWords): Promise<string> {
   const { series, figures, outlook, printed, plan } = record;
   const { every, season } = series;
-  const height = heightFor(outlook.periods.length);
+  const height = heightFor(outlook.periods.length, plan.paper);
   const shown = Math.min(figures.values.length, Math.max(5 * season, 12));
   const first = periodIndex(figures.start, every);
   const n = figures.values.length;
@@ -123,7 +125,7 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
   const width = await openTextWidth();
   const widest = Math.max(
     ...ahead.flatMap(({ name, label }) => [
-      width(name, { family: 'sans', size: LABEL }),
+      width(name, { family: 'sans', size: RAIL_NAME }),
       width(label, { family: 'sans', size: LABEL, weight: 600 }),
     ]),
   );
@@ -183,7 +185,7 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
       ...railRows.flatMap((values, row) => [
         {
           data: { values },
-          mark: { type: 'text', color: QUIET, fontSize: LABEL - 1.5 },
+          mark: { type: 'text', color: QUIET, fontSize: RAIL_NAME },
           encoding: { x, y: { value: height + 32 + 28 * row }, text: { field: 'name' } },
         },
         {

@@ -6,6 +6,7 @@
 import { barChart } from '../charts/bar-chart.js';
 import { outlookChart, startsAtZero } from '../charts/outlook-chart.js';
 import { residualsChart } from '../charts/residuals-chart.js';
+import { trackChart } from '../charts/track-chart.js';
 import type { BriefRecord } from '../record/record.js';
 import { checksOf, pastTable } from './checks.js';
 import { pageStyle, plainText, withType } from './document.js';
@@ -28,6 +29,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   const { plan, series, outlook } = record;
   const span = formats.span(outlook.periods[0].period, outlook.periods[outlook.periods.length - 1].period);
   const every = theme.say(`every.${series.every}.one`);
+  const isLong = outlook.periods.length > MANY;
   const view = {
     lang: plan.locale,
     title: `${series.name}, ${span} · ${plan.preparedFor}`,
@@ -38,6 +40,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
       of: theme.say('of'),
     }),
     trial: options.trial ? theme.say('trial') : null,
+    paper: plan.paper.toLowerCase(),
     logo: theme.logo,
     preparedFor: plan.preparedFor,
     heading: plan.heading,
@@ -48,9 +51,10 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     answer: answerSentence(record, theme, formats),
     picture: await pictureOf(record, theme, formats, every),
     figures: figuresTable(record, theme, formats, every),
-    isLong: outlook.periods.length > MANY,
+    isLong,
     reasons: reasons(record, theme, formats),
     trust: trustSentences(record, theme, formats).join(' '),
+    track: isLong ? null : await trackOf(record, theme, formats, every),
     caveats: caveatSentences(record, theme, formats),
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
     sum: sumTable(record, theme, formats),
@@ -65,6 +69,19 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     disclaimer: theme.say('disclaimer'),
   };
   return withType(theme.brief(view));
+}
+
+/** The picture beside the track record's sentences; null where there is none to draw. */
+async function trackOf(record: BriefRecord, theme: Theme, formats: Formats, every: string) {
+  const shown = record.trackRecord?.nextPeriod.slice(-12) ?? [];
+  const inside = shown.filter(({ actual, range80 }) => actual >= range80[0] && actual <= range80[1]).length;
+  const facts = { every, count: formats.number(shown.length, 0), inside: formats.number(inside, 0) };
+  const svg = await trackChart(record, {
+    described: plainText(theme.say('trust.picture.described', facts)),
+    share: (share) => formats.change(100 * share),
+    periodName: (period) => formats.period(period, 'short'),
+  });
+  return svg === null ? null : { title: theme.say('trust.picture.title', facts), svg };
 }
 
 /** More rows than this are set closer, so that page 1 stays one page. */
