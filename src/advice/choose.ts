@@ -65,24 +65,24 @@ export function choose(values: Float64Array, options: AdviceOptions): Choice {
   const there = values.reduce((count, value, t) => count + (Number.isNaN(value) || soldOut.includes(t) ? 0 : 1), 0);
   if (there < 3) throw new Error(`advice needs at least 3 figures; there are ${there}`);
   const numbers = { figures: there };
-  const scaleOf = () => options.scale ?? 'plain';
+  const scale = options.scale ?? 'plain';
   if (season > 1 && there < season + 2)
-    return settled(values, options, repeatModel(1, scaleOf()), [{ id: 'no-year', numbers }]);
+    return settled(values, options, repeatModel(1, scale), [{ id: 'no-year', numbers }]);
   if (there < FEWEST_DIFFERENCES + season)
-    return settled(values, options, repeatModel(season, scaleOf()), [{ id: 'little-history', numbers }]);
+    return settled(values, options, repeatModel(season, scale), [{ id: 'little-history', numbers }]);
 
   const evidence = season > 1 ? seasonEvidence(onSteadyScale(values), season) : 0;
   const isSeasonal = evidence >= 1;
   const shape: Reason =
     season === 1 ? { id: 'yearly', numbers } : { id: isSeasonal ? 'season' : 'no-season', numbers: { evidence } };
-  const model = (scale: string) => (isSeasonal ? seasonalModel(season, scale) : seasonlessModel(season, scale));
+  const model = (on: string) => (isSeasonal ? seasonalModel(season, on) : seasonlessModel(season, on));
   const found = byScale(values, options, model);
   if (found !== null) return { ...found, reasons: [shape, ...found.reasons] };
   // Gaps can leave a position of the season without any figure: then only a model without one can be fitted.
-  const seasonless = byScale(values, options, (scale) => seasonlessModel(season, scale));
+  const seasonless = byScale(values, options, (on) => seasonlessModel(season, on));
   if (seasonless !== null)
     return { ...seasonless, reasons: [{ id: 'gaps-in-season', numbers }, ...seasonless.reasons] };
-  return settled(values, options, repeatModel(1, scaleOf()), [{ id: 'little-history', numbers }]);
+  return settled(values, options, repeatModel(1, scale), [{ id: 'little-history', numbers }]);
 }
 
 /** Logarithms where all figures allow them, so that a season that grows with the level stays one. */

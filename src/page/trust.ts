@@ -49,6 +49,9 @@ function missText(miss: number, theme: Theme, formats: Formats): string {
   return miss < 0.005 ? theme.say('trust.tiny') : formats.share(miss);
 }
 
+/** What these rest on is no test with a probability. */
+const WITHOUT_CHANCE = ['enough-history', 'settled-fit', 'odd-quarters'];
+
 /** A row an assumption: what it says, whether it is borne out, the figure behind it, what follows. */
 export function assumptionRows({ assumptions, series }: BriefRecord, theme: Theme, formats: Formats) {
   const every = theme.say(`every.${series.every}.one`);
@@ -66,12 +69,8 @@ export function assumptionRows({ assumptions, series }: BriefRecord, theme: Them
         ratio: formats.number(details.ratio ?? 0, 2),
         list: periods.map((outlier) => periodText(outlier, theme, formats, series)).join('; '),
       };
-      const figure =
-        status === 'untested' || (statistic === null && id !== 'settled-fit')
-          ? 'untested'
-          : periods.length > 0
-            ? 'found'
-            : 'figure';
+      const hasFigure = status !== 'untested' && (pValue !== null || WITHOUT_CHANCE.includes(id));
+      const figure = !hasFigure ? 'untested' : periods.length > 0 ? 'found' : 'figure';
       return {
         says: theme.say(`assume.${id}.says`, facts),
         status: theme.say(`assume.state.${status}`),

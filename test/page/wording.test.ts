@@ -1,0 +1,195 @@
+/** Page 1's sentences over a grid of facts: no slip of grammar, no number that is none. */
+import { beforeAll, describe, expect, test } from 'vitest';
+import { formatsOf } from '../../src/page/formats.js';
+import { answerSentence, caveatSentences, reasons } from '../../src/page/sentences.js';
+import { loadTheme, type Theme } from '../../src/page/theme.js';
+import { assumptionRows, trustSentences } from '../../src/page/trust.js';
+import type { BriefRecord } from '../../src/record/record.js';
+import { recordSchema } from '../../src/record/record.js';
+import { sampleRecord } from '../record/sample.js';
+
+const themes = new Map<string, Theme>();
+beforeAll(async () => {
+  for (const locale of ['en-GB', 'de-DE']) themes.set(locale, await loadTheme(locale));
+});
+
+type Kind = readonly [BriefRecord['series']['every'], number, string];
+const KINDS: readonly Kind[] = [
+  ['quarter', 4, '2026-Q1'],
+  ['month', 12, '2026-01'],
+  ['half-year', 2, '2026-S1'],
+  ['year', 1, '2026'],
+];
+
+/** Every slip that is looked for, in any language. */
+const SLIPS =
+  /undefined|NaN|null|Infinity|\{\{|[-−]0(?![\d.,])| {2}| [.,;:]|^\s*$|\b1 (quarters|months|years|half-years|forecasts|periods)\b/;
+
+function expectClean(sentences: readonly string[]): void {
+  for (const sentence of sentences) {
+    const text = sentence.replace(/<[^>]+>/g, '');
+    expect(text).not.toMatch(SLIPS);
+    expect(text.endsWith('.') || text.endsWith('”') || text.endsWith('“'), text).toBe(true);
+    expect(text[0], text).toMatch(/[\p{Lu}\d“„]/u);
+  }
+}
+
+type Facts = BriefRecord['facts'];
+
+describe.each(['en-GB', 'de-DE'])('%s', (locale) => {
+  const theme = () => themes.get(locale) as Theme;
+  const make = (every: Kind, changes: (record: BriefRecord) => object): BriefRecord => {
+    const [kind, season, period] = every;
+    const base = sampleRecord();
+    const record = {
+      ...base,
+      plan: { ...base.plan, locale },
+      series: { ...base.series, every: kind, season },
+      figures: { ...base.figures, start: period },
+      outlook: { ...base.outlook, periods: base.outlook.periods.map((each) => ({ ...each, period })) },
+    };
+    return recordSchema.parse({ ...record, ...changes(record) });
+  };
+  const formats = (record: BriefRecord) => formatsOf(record.plan, record.series.every);
+
+  test.each(KINDS)(
+    'the answer, each %s: growing, falling, level, unknown; tiny, huge, zero, below zero; one and many',
+    (...every) => {
+      for (const expected of [0, 0.004, 1, 240, 12_345_678, -35])
+        for (const change of [null, 0, 1, 7, -8, -100, 250, 900])
+          for (const ahead of [1, 4, 13]) {
+            const record = make(every, ({ outlook, printed }) => ({
+              outlook: { ...outlook, periods: Array.from({ length: ahead }, () => outlook.periods[0]) },
+              printed: {
+                ...printed,
+                answer: {
+                  ...printed.answer,
+                  expected,
+                  range80: [expected - 1, expected + 1],
+                  change,
+                  places: expected === 0.004 ? 3 : 0,
+                },
+              },
+            }));
+            expectClean([answerSentence(record, theme(), formats(record))]);
+          }
+    },
+  );
+
+  test.each(KINDS)('the reasons, each %s: every season, direction and surprise', (...every) => {
+    const [, season, period] = every;
+    const seasons: Facts['season'][] = [
+      null,
+      ...(season === 1
+        ? []
+        : (['strong', 'weak', 'none'] as const).flatMap((strength) =>
+            [true, false].map((everyYear) => ({
+              strength,
+              peak: season > 2 ? [1, 2] : [1],
+              share: 0.41,
+              trough: season,
+              troughShare: 0.1,
+              everyYear,
+              fullYears: 9,
+            })),
+          )),
+    ];
+    const directions = (['rising', 'falling', 'level', 'unknown'] as const).flatMap((kind) =>
+      [1, 5].map((years) => ({ kind, perYear: kind === 'falling' ? -0.04 : 0.06, years })),
+    );
+    const surprises: Facts['surprise'][] = [
+      null,
+      ...(['none', 'small', 'large'] as const).flatMap((size) =>
+        [0, 0.5, 1.3].flatMap((carryNext) =>
+          [180, 260].map((actual) => ({
+            period,
+            actual,
+            expected: 220.4,
+            relative: 0.1,
+            size,
+            carryNext,
+            carryYear: null,
+          })),
+        ),
+      ),
+    ];
+    for (const oneSeason of seasons)
+      for (const direction of directions)
+        for (const surprise of surprises) {
+          const record = make(every, ({ facts }) => ({ facts: { ...facts, season: oneSeason, direction, surprise } }));
+          expectClean(reasons(record, theme(), formats(record)));
+        }
+  });
+
+  test.each(KINDS)('the caveats, each %s, one and many', (...every) => {
+    const [, , period] = every;
+    const ids = recordSchema.shape.facts.shape.caveats.element.shape.id.options;
+    for (const id of ids)
+      for (const count of [1, 3]) {
+        const caveat = { id, count, share: 0.62, what: 'Slipway closed', from: period, to: period };
+        const record = make(every, ({ facts }) => ({ facts: { ...facts, caveats: [caveat] } }));
+        expectClean(caveatSentences(record, theme(), formats(record)));
+      }
+  });
+
+  test.each(KINDS)('the trust, each %s: no record, a good one, one that a plain rule beats', (...every) => {
+    const [, , period] = every;
+    for (const miss of [null, 0, 0.002, 0.06, 0.4])
+      for (const lastYearMiss of [0.001, 0.06, 0.5])
+        for (const inside80 of [0, 0.5, 1]) {
+          const trackRecord = {
+            origins: 8,
+            count: 26,
+            miss,
+            lastYearMiss,
+            lastYearPlusChangeMiss: 0.3,
+            best: 'model' as const,
+            bias: 0,
+            mase: 1,
+            inside80,
+            inside95: 1,
+            intervalScore: 5,
+            missByStep: [0.1],
+            lastYearMissByStep: [0.1],
+            lastYearPlusChangeMissByStep: [0.1],
+            inside80ByStep: [1],
+            nextPeriod: [{ period, expected: 1, range80: [0, 2] as [number, number], actual: 1 }],
+          };
+          const record = make(every, () => ({ trackRecord }));
+          expectClean(trustSentences(record, theme(), formats(record)));
+        }
+    const none = make(every, () => ({}));
+    expectClean(trustSentences(none, theme(), formats(none)));
+  });
+
+  test('every assumption in every state', () => {
+    const ids = [
+      'leftover-pattern',
+      'even-spread',
+      'normal-surprises',
+      'odd-quarters',
+      'stable-over-time',
+      'enough-history',
+      'differencing',
+      'settled-fit',
+    ];
+    for (const status of ['holds', 'doubtful', 'fails', 'untested'] as const)
+      for (const pValue of [null, 0.0001, 0.6]) {
+        const record = make(KINDS[0], () => ({
+          assumptions: ids.map((id) => ({
+            id,
+            status,
+            statistic: status === 'untested' ? null : 3.2,
+            pValue,
+            details: { years: 9, ratio: 1.4 },
+            periods:
+              id === 'odd-quarters' && status === 'fails'
+                ? [{ period: '2026-Q1', kind: 'additive', size: 1, t: 5, forecastChange: -3 }]
+                : [],
+          })),
+        }));
+        for (const { says, figure, follows } of assumptionRows(record, theme(), formats(record)).rows)
+          for (const text of [says, figure, follows]) expect(text.replace(/<[^>]+>/g, '')).not.toMatch(SLIPS);
+      }
+  });
+});
