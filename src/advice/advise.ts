@@ -12,7 +12,7 @@ import { predictMeans } from '../sarima/predict.js';
 import { parseScale } from '../sarima/scale.js';
 import { chiSquaredUpperTail } from '../stats/chi-squared.js';
 import { ljungBoxTerms } from '../stats/portmanteau.js';
-import { type AdviceOptions, type Choice, choose, fitOptions, type Reason } from './choose.js';
+import { type AdviceOptions, type Choice, choose, fitOptions, type Reason, type Remembered } from './choose.js';
 import {
   fadingSeasonModel,
   type Model,
@@ -48,8 +48,9 @@ export interface Advice {
 
 /** Throws an Error where there are fewer than three figures or nothing can be fitted. */
 export function advise(values: ArrayLike<number>, options: AdviceOptions): Advice {
-  const { chosen, candidates, reasons } = compareModels(values, options);
-  const forecasts = adviceForecasts(Float64Array.from(values), options);
+  const remembered: Remembered = new Map();
+  const { chosen, candidates, reasons } = compareModels(values, options, remembered);
+  const forecasts = adviceForecasts(Float64Array.from(values), options, remembered);
   return { chosen, candidates, reasons, trackRecord: trackRecord(forecasts) };
 }
 
@@ -57,9 +58,10 @@ export function advise(values: ArrayLike<number>, options: AdviceOptions): Advic
 export function compareModels(
   values: ArrayLike<number>,
   options: AdviceOptions,
+  remembered: Remembered = new Map(),
 ): Omit<Advice, 'trackRecord'> & { readonly model: Model } {
   const figures = Float64Array.from(values);
-  const choice = choose(figures, options);
+  const choice = choose(figures, options, remembered);
   return {
     model: choice.model,
     chosen: chosenOptions(choice, options),
@@ -74,9 +76,13 @@ export function chosenOptions({ model, fit }: Choice, options: AdviceOptions): F
 }
 
 /** Forecasts from rolling origins, the advice repeated at each, so that no hindsight flatters them. */
-export function adviceForecasts(values: Float64Array, options: AdviceOptions): Forecast[] {
+export function adviceForecasts(
+  values: Float64Array,
+  options: AdviceOptions,
+  remembered: Remembered = new Map(),
+): Forecast[] {
   const { ahead, season, soldOut = [] } = options;
-  return rollingForecasts(values, (known) => adviceAt(values, known, options), {
+  return rollingForecasts(values, (known) => adviceAt(values, known, options, remembered), {
     ahead,
     season,
     soldOut,
@@ -84,9 +90,9 @@ export function adviceForecasts(values: Float64Array, options: AdviceOptions): F
   });
 }
 
-function adviceAt(values: Float64Array, known: number, options: AdviceOptions): Fit | null {
+function adviceAt(values: Float64Array, known: number, options: AdviceOptions, remembered: Remembered): Fit | null {
   try {
-    return choose(values.subarray(0, known), { ...options, ...besideAt(options, known) }).fit;
+    return choose(values.subarray(0, known), { ...options, ...besideAt(options, known) }, remembered).fit;
   } catch {
     return null;
   }

@@ -58,8 +58,11 @@ const VETO_ORIGINS = 4;
 /** By as much as this the likelihood alone decides. */
 const DECISIVE = 10;
 
+/** Fits of one series by form, scale and number of figures: rolling origins and the veto at each ask for the same ones. */
+export type Remembered = Map<string, Fit | Error>;
+
 /** Throws an Error with fewer than three figures, or none that a model can be fitted to. */
-export function choose(values: Float64Array, options: AdviceOptions): Choice {
+export function choose(values: Float64Array, options: AdviceOptions, remembered: Remembered = new Map()): Choice {
   const { season } = options;
   const soldOut = options.soldOut ?? [];
   const there = values.reduce((count, value, t) => count + (Number.isNaN(value) || soldOut.includes(t) ? 0 : 1), 0);
@@ -76,10 +79,10 @@ export function choose(values: Float64Array, options: AdviceOptions): Choice {
   const shape: Reason =
     season === 1 ? { id: 'yearly', numbers } : { id: isSeasonal ? 'season' : 'no-season', numbers: { evidence } };
   const model = (on: string) => (isSeasonal ? seasonalModel(season, on) : seasonlessModel(season, on));
-  const found = byScale(values, options, model);
+  const found = byScale(values, options, remembered, model);
   if (found !== null) return { ...found, reasons: [shape, ...found.reasons] };
   // Gaps can leave a position of the season without any figure: then only a model without one can be fitted.
-  const seasonless = byScale(values, options, (on) => seasonlessModel(season, on));
+  const seasonless = byScale(values, options, remembered, (on) => seasonlessModel(season, on));
   if (seasonless !== null)
     return { ...seasonless, reasons: [{ id: 'gaps-in-season', numbers }, ...seasonless.reasons] };
   return settled(values, options, repeatModel(1, scale), [{ id: 'little-history', numbers }]);
@@ -91,12 +94,17 @@ function onSteadyScale(values: Float64Array): Float64Array {
 }
 
 /** The same model on either scale, and which of the two; null where neither can be fitted. */
-function byScale(values: Float64Array, options: AdviceOptions, model: (scale: string) => Model): Choice | null {
+function byScale(
+  values: Float64Array,
+  options: AdviceOptions,
+  remembered: Remembered,
+  model: (scale: string) => Model,
+): Choice | null {
   const method: Reason = { id: options.fittedBy === 'maximum-likelihood' ? 'unrestricted' : 'shrunk', numbers: {} };
   const fitted = (scale: string): Choice | null => {
     try {
       const asked = { ...model(scale), ...kept(options) };
-      return { model: asked, fit: fitModel(values, fitOptions(asked, options)), reasons: [] };
+      return { model: asked, fit: fitOnce(values, asked, options, remembered), reasons: [] };
     } catch {
       return null;
     }
@@ -118,7 +126,7 @@ function byScale(values: Float64Array, options: AdviceOptions, model: (scale: st
   const numbers = { difference };
   const favour = options.season >= 8 ? IN_FAVOUR_OF_LOG : 0;
   if (difference + favour <= 0) return { ...plain, reasons: [method, { id: 'plain-likelier', numbers }] };
-  const ratio = options.season < 8 && difference < DECISIVE ? missRatio(values, log, plain, options) : 1;
+  const ratio = options.season < 8 && difference < DECISIVE ? missRatio(values, log, plain, options, remembered) : 1;
   if (ratio > VETO) return { ...plain, reasons: [method, { id: 'log-missed-more', numbers: { difference, ratio } }] };
   return { ...log, reasons: [method, { id: 'log-likelier', numbers }] };
 }
@@ -170,13 +178,18 @@ function criterion({ fit }: Choice, from: number): number {
 }
 
 /** How many times as much the one missed as the other, over the last origins; 1 where there is too little to say. */
-function missRatio(values: Float64Array, one: Choice, other: Choice, options: AdviceOptions): number {
+function missRatio(
+  values: Float64Array,
+  one: Choice,
+  other: Choice,
+  options: AdviceOptions,
+  remembered: Remembered,
+): number {
   const n = values.length;
   const origins = Math.min(VETO_ORIGINS, n - 2 * options.season - FEWEST_DIFFERENCES - 1);
   const missed = [0, 0];
   for (let back = origins; back >= 1; back--) {
-    const known = n - back;
-    const misses = [one, other].map((choice) => missAt(values, choice, known, options));
+    const misses = [one, other].map(({ model }) => missAt(values, model, n - back, options, remembered));
     if (!misses.every(Number.isFinite)) continue;
     missed[0] += misses[0];
     missed[1] += misses[1];
@@ -184,21 +197,38 @@ function missRatio(values: Float64Array, one: Choice, other: Choice, options: Ad
   return missed[1] > 0 ? missed[0] / missed[1] : 1;
 }
 
-function missAt(values: Float64Array, { model, fit }: Choice, known: number, options: AdviceOptions): number {
+function missAt(
+  values: Float64Array,
+  model: Model,
+  known: number,
+  options: AdviceOptions,
+  remembered: Remembered,
+): number {
   try {
-    const again = fitModel(values.subarray(0, known), {
-      ...fitOptions(model, options),
-      ...besideAt(options, known),
-      near: fit,
-      standardErrors: false,
-    });
+    const then = { ...options, ...besideAt(options, known) };
+    const fit = fitOnce(values.subarray(0, known), model, then, remembered);
     const { from } = parseScale(model.scale);
     const ahead = Math.min(options.season, values.length - known);
-    return predictMeans(again, Math.max(ahead, 1)).reduce((sum, mean, h) => {
+    return predictMeans(fit, Math.max(ahead, 1)).reduce((sum, mean, h) => {
       const actual = values[known + h];
       return Number.isNaN(actual) ? sum : sum + Math.abs(actual - from(mean));
     }, 0);
   } catch {
     return Number.NaN;
   }
+}
+
+function fitOnce(values: Float64Array, model: Model, options: AdviceOptions, remembered: Remembered): Fit {
+  const key = [model.form, model.scale, values.length].join();
+  let found = remembered.get(key);
+  if (found === undefined) {
+    try {
+      found = fitModel(values, fitOptions(model, options));
+    } catch (error) {
+      found = error instanceof Error ? error : new Error(String(error));
+    }
+    remembered.set(key, found);
+  }
+  if (found instanceof Error) throw found;
+  return found;
 }

@@ -22,8 +22,6 @@ export interface FitOptions {
   readonly season?: number;
   /** A fit of the same form to most of the same figures: the search starts there and stays on its summit. */
   readonly near?: Fitted;
-  /** Unless given, yes. Without, the covariance is null and the fit takes half the time. */
-  readonly standardErrors?: boolean;
 }
 
 interface Fitted {
@@ -46,7 +44,6 @@ export interface Asked {
   readonly soldOut: readonly number[];
   /** φ, θ, Φ, Θ to start from; null where the search finds its own starts. */
   readonly near: readonly number[] | null;
-  readonly standardErrors: boolean;
 }
 
 /** Throws an Error where an option can't be used. */
@@ -80,7 +77,6 @@ export function normalize(values: ArrayLike<number>, options: FitOptions): Asked
     regressors: regressors.map(({ name, values: column }) => ({ name, values: Float64Array.from(column) })),
     soldOut,
     near: options.near ? [options.near.phi, options.near.theta, options.near.Phi, options.near.Theta].flat() : null,
-    standardErrors: options.standardErrors ?? true,
   };
 }
 

@@ -119,10 +119,8 @@ function report(
   const { p, q, P } = form;
   const { z } = found;
   // Where demand is unknown its periods tell nothing of the estimates' spread: a little wide, never too narrow.
-  const informed = () => (demand === null ? engine : createEngine(form, withoutFigures(prepared, soldOut), penalty));
-  const information = asked.standardErrors
-    ? informationAt(informed(), prepared, z)
-    : { covariance: null, effectiveCoefficients: engine.problem.parameters + penalty.ridge.length };
+  const informed = demand === null ? engine : createEngine(form, withoutFigures(prepared, soldOut), penalty);
+  const information = informationAt(informed, prepared, z);
   const completed = demand === null ? prepared : withSeries(prepared, demand.series);
   const exact =
     completed.gaps.length > 0
