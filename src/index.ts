@@ -6,5 +6,5 @@ export { type Advised, type ChoiceOptions, type ChoiceResult, writeChoiceSheets 
 export type { Reporter, WriteOptions } from './commands/work.js';
 export { type WriteResult, writeBriefs } from './commands/write.js';
 export { type ForecastPeriod, forecast } from './outlook/outlook.js';
-export { type Coefficient, type Fit, type FitOptions, fitModel } from './sarima/fit.js';
+export { type Coefficient, type Fit, type FitOptions, fitModel, TooFewFigures } from './sarima/fit.js';
 export { type Form, formText, parseForm } from './sarima/form.js';

@@ -50,7 +50,7 @@ export interface Choice {
 const FEWEST_DIFFERENCES = 8;
 
 /** Months and finer: logarithms, unless plain figures are likelier by this many units of −2 log-likelihood. */
-const IN_FAVOUR_OF_LOG = 6;
+export const IN_FAVOUR_OF_LOG = 6;
 
 /** Logarithms that missed by this many times as much in the back-test are not taken. */
 const VETO = 1.2;
@@ -121,8 +121,7 @@ function byScale(
     const why: Reason[] = isPositive ? [] : [{ id: 'not-above-zero', numbers: {} }];
     return only && { ...only, reasons: [method, ...why] };
   }
-  const from = firstCompared(plain, log);
-  const difference = criterion(plain, from) - criterion(log, from);
+  const difference = logAdvantage(plain.fit, log.fit);
   const numbers = { difference };
   const favour = options.season >= 8 ? IN_FAVOUR_OF_LOG : 0;
   if (difference + favour <= 0) return { ...plain, reasons: [method, { id: 'plain-likelier', numbers }] };
@@ -157,14 +156,18 @@ function settled(values: Float64Array, options: AdviceOptions, model: Model, rea
   }
 }
 
-/** The first periods' residuals hang on the start: they are left out of a comparison of scales. */
-function firstCompared({ fit }: Choice, other: Choice): number {
+/**
+ * By how many units of −2 log-likelihood, penalties included, the same model is likelier on logarithms. The first
+ * periods' residuals hang on the start and are left out.
+ */
+export function logAdvantage(plain: Fit, log: Fit): number {
   const first = (of: Fit) => of.standardizedResiduals.findIndex((z) => !Number.isNaN(z));
-  return Math.max(first(fit), first(other.fit)) + (fit.season >= 8 ? 2 : 1);
+  const from = Math.max(first(plain), first(log)) + (plain.season >= 8 ? 2 : 1);
+  return criterion(plain, from) - criterion(log, from);
 }
 
 /** −2 log-likelihood of the figures themselves from a period on, twice the priors' penalty added. */
-function criterion({ fit }: Choice, from: number): number {
+function criterion(fit: Fit, from: number): number {
   const { residuals, standardizedResiduals, values, innovationVariance } = fit;
   const { logDerivative } = parseScale(fit.scale);
   let sum = 2 * fit.penalty;

@@ -4,8 +4,8 @@ import { dirname, resolve } from 'node:path';
 import { type Every, seasonOf } from '../calendar/calendar.js';
 import { InputError, type Place } from '../figures/input-error.js';
 import { type Located, type Path, readDocument } from './document.js';
-import { inFileOrder, located, remarksOf, sentence, valueAt } from './faults.js';
-import { type CheckModel, periodPaths, remarksOnRules } from './rules.js';
+import { inFileOrder, located, remarksOf } from './faults.js';
+import { type CheckModel, remarksOnRules } from './rules.js';
 import { type PlanText, planSchema, type SeriesText } from './schema.js';
 import { slugsOf } from './slugs.js';
 
@@ -75,8 +75,6 @@ export interface PlannedSeries {
   readonly budget: Budget | null;
   readonly at: Place;
   readonly columnAt: Place;
-  /** Every period that the series' keys name, to be checked against the figures. */
-  readonly named: readonly NamedPeriod[];
 }
 
 export interface PlannedPriors {
@@ -121,13 +119,6 @@ export interface Budget {
   readonly kind: 'income' | 'spending';
   /** Money for a unit. */
   readonly perUnit: number;
-  readonly at: Place;
-}
-
-export interface NamedPeriod {
-  readonly text: string;
-  /** The sentence's start, for a message: `from "2020-Q2"`. */
-  readonly sentence: string;
   readonly at: Place;
 }
 
@@ -246,7 +237,6 @@ const seriesOf = (series: SeriesText, slug: string, path: Path, document: Locate
     budget: series.budget ? budgetOf(series.budget, at('budget')) : null,
     at: at(),
     columnAt: at('column'),
-    named: namedPeriods(path, document),
   };
 };
 
@@ -263,10 +253,3 @@ const purchaseOf = (purchase: NonNullable<SeriesText['purchase']>, at: Place): P
 
 const budgetOf = ({ price, cost }: NonNullable<SeriesText['budget']>, at: Place): Budget =>
   price !== undefined ? { kind: 'income', perUnit: price, at } : { kind: 'spending', perUnit: cost ?? 0, at };
-
-const namedPeriods = (series: Path, document: Located): readonly NamedPeriod[] =>
-  periodPaths(document.value, series).flatMap((path) => {
-    const text = valueAt(document.value, path);
-    if (typeof text !== 'string') return [];
-    return [{ text, sentence: sentence(document.value, path, ''), at: document.placeOf(path, 'value') }];
-  });

@@ -44,7 +44,7 @@ export const remarksOnRules = (plan: unknown, checkModel: CheckModel): readonly 
 };
 
 /** Where a series names a period: the paths of all, whether or not they hold one. */
-export const periodPaths = (plan: unknown, series: Path): readonly Path[] => [
+const periodPaths = (plan: unknown, series: Path): readonly Path[] => [
   ...['events', 'judgement'].flatMap((key) =>
     itemPaths(plan, [...series, key]).flatMap((item) => [
       [...item, 'from'],

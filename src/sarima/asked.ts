@@ -83,7 +83,22 @@ export function normalize(values: ArrayLike<number>, options: FitOptions): Asked
 /** Shrunk, a model can do with this many differences. */
 const FEWEST_SHRUNK = 8;
 
-/** Throws an Error that says how many figures the model needs where there are fewer. */
+/** A model that needs more figures than there are; how many is in it as numbers too. */
+export class TooFewFigures extends Error {
+  override readonly name = 'TooFewFigures';
+  readonly needed: number;
+  /** Periods that sold out do not count. */
+  readonly there: number;
+
+  constructor(form: Form, needed: number, there: number, hasSoldOut: boolean) {
+    const which = hasSoldOut ? 'figures from periods that did not sell out' : 'figures';
+    super(`model ${formText(form)} needs at least ${needed} ${which}; there are ${there}: use a shorter model`);
+    this.needed = needed;
+    this.there = there;
+  }
+}
+
+/** Throws a TooFewFigures that says how many figures the model needs where there are fewer. */
 export function checkEnough({ form, fittedBy, constant, regressors, soldOut }: Asked, series: Float64Array): void {
   const there = series.reduce((count, y) => count + (Number.isNaN(y) ? 0 : 1), -soldOut.length);
   const lost = lostToDifferencing(form);
@@ -95,8 +110,5 @@ export function checkEnough({ form, fittedBy, constant, regressors, soldOut }: A
       : fittedBy === 'shrunk'
         ? lost + Math.max(FEWEST_SHRUNK, columns + 3)
         : Math.max(2 * form.m + coefficients + lost + 3, 12, lost + coefficients + columns + 3);
-  if (there < needed)
-    throw new Error(
-      `model ${formText(form)} needs at least ${needed} figures${soldOut.length > 0 ? ' from periods that did not sell out' : ''}; there are ${there}: use a shorter model`,
-    );
+  if (there < needed) throw new TooFewFigures(form, needed, there, soldOut.length > 0);
 }

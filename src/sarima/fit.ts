@@ -22,7 +22,7 @@ import { nearlyCancels, nearUnitRoots } from './roots.js';
 import { toScale } from './scale.js';
 import { search, stay } from './search.js';
 
-export type { FitOptions, FittedBy } from './asked.js';
+export { type FitOptions, type FittedBy, TooFewFigures } from './asked.js';
 export type { Prior, Priors } from './priors.js';
 
 export interface Coefficient {

@@ -1,6 +1,5 @@
 import { spawn } from 'node:child_process';
 import { cp, mkdtemp, readdir, readFile, rm, writeFile } from 'node:fs/promises';
-import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
@@ -10,6 +9,7 @@ import { writeChoiceSheets } from '../../src/commands/advise.js';
 import { checkModel } from '../../src/commands/check-model.js';
 import { bundledBrowser } from '../../src/page/browser.js';
 import { parsePlan } from '../../src/plan/plan.js';
+import { looked } from './looked-at.js';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 const slugs = ['antifouling-paint', 'mooring-rope', 'visitor-nights', 'workshop-labour'];
@@ -183,7 +183,6 @@ test('axe-core finds nothing on the sheets, which ask for nothing over the netwo
     headless: 'shell',
     args: ['--no-sandbox', '--host-resolver-rules=MAP * ~NOTFOUND'],
   });
-  const axe = createRequire(import.meta.url).resolve('axe-core/axe.min.js');
   try {
     const page = await browser.newPage();
     const asked: string[] = [];
@@ -195,22 +194,9 @@ test('axe-core finds nothing on the sheets, which ask for nothing over the netwo
       const html = await readFile(file, 'utf8');
       expect(Buffer.byteLength(html)).toBeLessThan(300_000);
       expect(html).not.toMatch(/(?:src|href)="(?!data:)|url\((?!["']?data:)|@import|NaN|undefined/);
-      for (const scheme of ['light', 'dark']) {
-        await page.emulateMediaFeatures([{ name: 'prefers-color-scheme', value: scheme }]);
-        await page.setViewport({ width: scheme === 'dark' ? 390 : 1280, height: 900 });
-        await page.goto(`file://${file}`);
-        await page.addScriptTag({ path: axe });
-        const found = await page.evaluate(async () => {
-          const { axe } = globalThis as unknown as {
-            axe: { run: () => Promise<{ violations: { id: string; nodes: { html: string }[] }[] }> };
-          };
-          const { violations } = await axe.run();
-          return violations.map(({ id, nodes }) => `${id}: ${nodes[0]?.html.slice(0, 200)}`);
-        });
-        expect(found, `${slug} (${scheme})`).toEqual([]);
-        const overflow = await page.evaluate(
-          'document.documentElement.scrollWidth - document.documentElement.clientWidth',
-        );
+      for (const scheme of ['light', 'dark'] as const) {
+        const { violations, overflow } = await looked(page, file, scheme);
+        expect(violations, `${slug} (${scheme})`).toEqual([]);
         expect(overflow, `${slug} at ${scheme}`).toBeLessThanOrEqual(0);
       }
     }

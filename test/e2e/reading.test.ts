@@ -1,5 +1,4 @@
 import { mkdtemp, readFile, rm, writeFile } from 'node:fs/promises';
-import { createRequire } from 'node:module';
 import { tmpdir } from 'node:os';
 import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
@@ -10,6 +9,7 @@ import { writeBriefs } from '../../src/commands/write.js';
 import { bundledBrowser } from '../../src/page/browser.js';
 import { type BriefRecord, recordSchema } from '../../src/record/record.js';
 import { openR, type R } from '../reference/r.js';
+import { looked } from './looked-at.js';
 
 const starter = fileURLToPath(new URL('../../templates/starter/plan.yaml', import.meta.url));
 const STARTER = ['antifouling-paint', 'visitor-nights', 'mooring-rope', 'workshop-labour'];
@@ -124,31 +124,17 @@ test('axe-core finds nothing on briefs and cover, which ask for nothing over the
     headless: 'shell',
     args: ['--no-sandbox', '--host-resolver-rules=MAP * ~NOTFOUND'],
   });
-  const axe = createRequire(import.meta.url).resolve('axe-core/axe.min.js');
   try {
     const page = await browser.newPage();
     const asked: string[] = [];
     page.on('request', (request) => {
       if (!/^(file|data|about):/.test(request.url())) asked.push(request.url());
     });
-    for (const scheme of ['light', 'dark']) {
-      await page.emulateMediaFeatures([{ name: 'prefers-color-scheme', value: scheme }]);
+    for (const scheme of ['light', 'dark'] as const) {
       for (const file of [...made.map(([, at]) => `${at()}.html`), join(dirname(made[0][1]()), 'cover.html')]) {
         expect((await readFile(file)).length).toBeLessThan(300_000);
-        await page.setViewport({ width: scheme === 'dark' ? 390 : 1280, height: 900 });
-        await page.goto(`file://${file}`);
-        await page.addScriptTag({ path: axe });
-        const found = await page.evaluate(async () => {
-          const { axe } = globalThis as unknown as {
-            axe: { run: () => Promise<{ violations: { id: string; nodes: { html: string }[] }[] }> };
-          };
-          const { violations } = await axe.run();
-          return violations.map(({ id, nodes }) => `${id}: ${nodes[0]?.html.slice(0, 200)}`);
-        });
-        expect(found, `${file} (${scheme})`).toEqual([]);
-        const overflow = await page.evaluate(
-          'document.documentElement.scrollWidth - document.documentElement.clientWidth',
-        );
+        const { violations, overflow } = await looked(page, file, scheme);
+        expect(violations, `${file} (${scheme})`).toEqual([]);
         expect(overflow, `${file} at ${scheme}`).toBeLessThanOrEqual(0);
       }
     }

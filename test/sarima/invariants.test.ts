@@ -147,6 +147,9 @@ describe('hard figures give a result or an error that says what is wrong', () =>
       ),
     ).toThrow(/every figure is the same/);
     expect(() => fitModel(y.slice(0, 12), { form: '(0,1,1)x(0,1,1)4' })).toThrow(/needs at least 18 figures/);
+    expect(() => fitModel(y.slice(0, 12), { form: '(0,1,1)x(0,1,1)4' })).toThrow(
+      expect.objectContaining({ name: 'TooFewFigures', needed: 18, there: 12 }),
+    );
     expect(() => fitModel([...y.slice(0, 40), 0], { form: '(0,1,1)x(0,1,1)4', scale: 'log' })).toThrow(/figure 41/);
     expect(fitModel(y.slice(0, 6), { form: '(0,0,0)x(0,1,0)4' }).observations).toBe(2);
   });
