@@ -6,6 +6,8 @@ export interface Formats {
   readonly number: (value: number, places: number) => string;
   /** Whole per cent with a sign: +6%. */
   readonly change: (percent: number) => string;
+  /** Per cent with so many places, without a sign: 0.4%. */
+  readonly percent: (percent: number, places: number) => string;
   /** A share as whole per cent: 0.41 is 41%. */
   readonly share: (share: number) => string;
   readonly period: (text: string, style: NameStyle) => string;
@@ -29,6 +31,7 @@ export function formatsOf(plan: BriefRecord['plan'], every: BriefRecord['series'
   return {
     number: (value, places) => minus(numberFormat(locale, places).format(value === 0 ? 0 : value)),
     change: (percent) => minus(change.format(percent / 100)),
+    percent: (value, places) => minus(percentFormat(locale, places).format(value / 100)),
     share: (value) => minus(share.format(value)),
     period: (text, style) => periodName(text, every, yearStarts, locale, style),
     span: (first, last) => spanName(first, last, every, yearStarts, locale),
@@ -37,6 +40,9 @@ export function formatsOf(plan: BriefRecord['plan'], every: BriefRecord['series'
     plural: (count) => plurals.select(count),
   };
 }
+
+const percentFormat = (locale: string, places: number): Intl.NumberFormat =>
+  new Intl.NumberFormat(locale, { style: 'percent', minimumFractionDigits: places, maximumFractionDigits: places });
 
 const made = new Map<string, Intl.NumberFormat>();
 

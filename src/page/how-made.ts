@@ -1,5 +1,6 @@
 /** The page that shows how the forecast is made: the model in words and equations, the worked sum, the coefficients. */
 import type { BriefRecord } from '../record/record.js';
+import { eventName } from './coefficients.js';
 import type { Formats } from './formats.js';
 import type { Theme } from './theme.js';
 
@@ -19,7 +20,7 @@ export function madeOf(record: BriefRecord, theme: Theme, formats: Formats, equa
     paragraph: [
       theme.say('made.lead', { period: formats.period(outlook.periods[0].period, 'long') }),
       theme.say(`made.scale.${scale}`, { what: theme.say(`made.what.${differencing}`, { every }) }),
-      theme.say(`made.then.${then}`),
+      ...thenSentences(then, model.constant ? (regular + seasonal > 0 ? 'drift' : 'level') : null, theme),
       theme.say('made.last', { unit: series.unit }),
     ].join(' '),
     reason: model.reason === null ? null : theme.say('made.reason', { reason: model.reason }),
@@ -44,6 +45,13 @@ export function madeOf(record: BriefRecord, theme: Theme, formats: Formats, equa
           ]),
     ],
   };
+}
+
+/** What is done second: with nothing autoregressive or moving-average the constant is all there is. */
+function thenSentences(then: string, constant: 'drift' | 'level' | null, theme: Theme): string[] {
+  if (constant === null) return [theme.say(`made.then.${then}`)];
+  if (then === 'none') return [theme.say(`made.then.${constant}`)];
+  return [theme.say(`made.then.${then}`), theme.say(`made.${constant}`)];
 }
 
 const formText = (form: string): string => form.replace(')x(', ') × (');
@@ -127,114 +135,4 @@ function backName(
   const isFirst = sum.back[0] === line && power > 0 && isLog;
   const words = theme.say(isFirst ? 'sum.base' : `sum.${key}`, { period });
   return Math.abs(power) === 1 ? words : `${words} (${Math.abs(power)}×)`;
-}
-
-const eventName = ({ figures }: BriefRecord, coefficient: string | null): string =>
-  figures.events.find((event) => event.coefficient === coefficient)?.what ?? coefficient ?? '';
-
-/** With what each was pulled towards, and where it would stand without, where the estimates are shrunk. */
-export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats) {
-  const { equation, fit, model, outlook, series } = record;
-  const { priors } = model;
-  return {
-    title: theme.say('meaning.title'),
-    isPulled: priors !== null,
-    heads: [
-      theme.say('meaning.symbol'),
-      theme.say('meaning.value'),
-      theme.say('meaning.likely'),
-      ...(priors === null ? [] : [theme.say('meaning.towards'), theme.say('meaning.free')]),
-      theme.say('meaning.says'),
-      theme.say('meaning.moves', { period: formats.period(outlook.periods[0].period, 'short') }),
-    ],
-    rows: equation.meanings.map((meaning, i) => {
-      const places = decimalsFor(meaning.value);
-      const number = (value: number) => formats.number(value, places);
-      const moves = meaning.sensitivity;
-      return {
-        symbol: fit.coefficients[i].symbol,
-        value: number(meaning.value),
-        likely:
-          meaning.range === null
-            ? theme.say('meaning.unknown')
-            : theme.say('figures.and', { low: number(meaning.range[0]), high: number(meaning.range[1]) }),
-        towards: pullText(priors?.coefficients[fit.coefficients[i].name], theme, number),
-        free: fit.unrestricted === null ? '–' : number(fit.unrestricted[i].value),
-        says: meaningSentence(record, meaning, fit.coefficients[i].symbol, theme, formats),
-        moves:
-          moves === null
-            ? '–'
-            : `${formats.number(Math.abs(moves), Math.max(series.places, Math.abs(moves) < 1 ? 1 : 0))} ${series.unit}`,
-      };
-    }),
-    pulled:
-      priors === null
-        ? null
-        : theme.say('meaning.pulled', {
-            count: formats.number(fit.coefficients.length, 0),
-            effective: formats.number(fit.effectiveCoefficients, 1),
-          }),
-  };
-}
-
-function pullText(
-  prior: NonNullable<BriefRecord['model']['priors']>['coefficients'][string] | undefined,
-  theme: Theme,
-  number: (value: number) => string,
-): string {
-  if (prior === undefined) return '–';
-  const facts = { centre: number(prior.centre), spread: number(prior.spread) };
-  return theme.say(prior.on === 'partial' ? 'meaning.pull-partial' : 'meaning.pull', facts);
-}
-
-/** Two places for numbers about one, fewer for large ones. */
-const decimalsFor = (value: number): number => (Math.abs(value) >= 100 ? 0 : Math.abs(value) >= 10 ? 1 : 2);
-
-type Meaning = BriefRecord['equation']['meanings'][number];
-
-function meaningSentence(
-  record: BriefRecord,
-  meaning: Meaning,
-  symbol: string,
-  theme: Theme,
-  formats: Formats,
-): string {
-  const { series, model, equation } = record;
-  const every = theme.say(`every.${series.every}.one`);
-  const share = formats.share(Math.abs(meaning.value));
-  const { regular, seasonal } = equation.differenced.definition;
-  const facts = { symbol, every, share, rest: formats.share(Math.max(0, 1 - Math.abs(meaning.value))) };
-  if (meaning.size === 'none') return theme.say('meaning.none', facts);
-  const sign = meaning.value < 0 ? '-negative' : '';
-  switch (meaning.role) {
-    case 'ar':
-    case 'seasonal-ar':
-      return theme.say(`meaning.${meaning.role}${sign}`, facts);
-    case 'ma':
-      return theme.say(
-        meaning.value > 0 ? 'meaning.ma-positive' : regular > 0 ? 'meaning.ma-differenced' : 'meaning.ma',
-        facts,
-      );
-    case 'seasonal-ma':
-      return theme.say(
-        meaning.value > 0
-          ? 'meaning.seasonal-ma-positive'
-          : seasonal > 0
-            ? 'meaning.seasonal-ma-differenced'
-            : 'meaning.seasonal-ma',
-        facts,
-      );
-    case 'constant': {
-      const per = theme.say(seasonal > 0 ? 'every.year.one' : `every.${series.every}.one`);
-      return theme.say(regular + seasonal === 0 ? 'meaning.constant.level' : 'meaning.constant.drift', { per });
-    }
-    default: {
-      const effect =
-        meaning.percent !== null && model.scale === 'log'
-          ? formats.change(meaning.percent)
-          : `${formats.number(meaning.value, series.places)} ${series.unit}`;
-      const key = meaning.role === 'lasting-event' ? 'meaning.lasting' : 'meaning.event';
-      return theme.say(key, { what: eventName(record, meaning.coefficient), effect });
-    }
-  }
 }

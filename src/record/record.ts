@@ -145,11 +145,15 @@ const equation = z.strictObject({
       ]),
       lag: z.int().min(0),
       value: number,
-      /** Estimate plus and minus 1.96 standard errors; null without a standard error. */
+      /** Estimate plus and minus 1.96 standard errors, within what the model allows; null without a standard error. */
       range: range.nullable(),
       size: z.enum(['none', 'small', 'medium', 'large']),
-      /** What an effect or the constant amounts to in per cent (log scale), else null. */
+      /** What an effect or a drift amounts to in per cent (log scale), else null. */
       percent: missable,
+      /** What an effect, a drift or a level amounts to in the series' unit; null where the scale gives no such number. */
+      units: missable,
+      /** The share of a surprise that stays for good, where this coefficient alone decides it. */
+      lasting: missable,
       /** How far, and which way, the first forecast (middle, in units) moves for one standard error more. */
       sensitivity: missable,
     }),

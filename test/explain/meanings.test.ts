@@ -15,7 +15,7 @@ test('an AR(1) coefficient moves the forecast by the last deviation, a level by 
   expect(ar).toMatchObject({ role: 'ar', lag: 1, percent: null });
   expect(ar.sensitivity).toBeCloseTo((figures[47] - fit.constantValue) * se[0], 8);
   expect(constant.sensitivity).toBeCloseTo((1 - fit.phi[0]) * se[1], 8);
-  expect(ar.range).toEqual([fit.phi[0] - 1.96 * se[0], fit.phi[0] + 1.96 * se[0]]);
+  expect(ar.range).toEqual([fit.phi[0] - 1.96 * se[0], Math.min(fit.phi[0] + 1.96 * se[0], 1)]);
 });
 
 test('roles and lags follow the form, events their kind; effects on logarithms are told in per cent', () => {
@@ -49,6 +49,30 @@ test('the sensitivity on the log scale is the same share of the forecast, to fir
   const centre = Math.log(figures[47]) - fit.constantValue;
   const middle = Math.exp(fit.constantValue + value * centre);
   expect(ar.sensitivity).toBeCloseTo(middle * centre * (standardError ?? Number.NaN), 5);
+});
+
+test('a lone coefficient’s range ends at one, and a lone moving average says what of a surprise stays', () => {
+  const fit = fitModel(figures, { form: '(0,1,1)x(0,1,1)4' });
+  const wide = { ...fit, coefficients: fit.coefficients.map((each) => ({ ...each, standardError: 0.9 })) };
+  const [ma, seasonal] = meanings(wide, none, none);
+  // (1 − B)y = (1 + θB)ε: after one step every ψ is 1 + θ.
+  expect(ma.lasting).toBe(1 + fit.theta[0]);
+  expect(seasonal.lasting).toBe(1 + fit.Theta[0]);
+  for (const { range } of [ma, seasonal]) expect(range?.[0]).toBe(-1);
+  const mixed = fitModel(figures, { form: '(1,1,1)' });
+  for (const { lasting } of meanings(mixed, none, none)) expect(lasting).toBeNull();
+});
+
+test('a level is told in units on every scale, a drift in per cent on logarithms', () => {
+  const [level] = meanings(fitModel(figures, { form: '(0,0,0)', scale: 'log' }), none, none);
+  // The mean of the logarithms, turned back, is the geometric mean.
+  const geometric = Math.exp(figures.reduce((sum, y) => sum + Math.log(y), 0) / figures.length);
+  expect(level.units).toBeCloseTo(geometric, 6);
+  expect(level.percent).toBeNull();
+  const drift = meanings(fitModel(figures, { form: '(0,1,0)', scale: 'log', constant: true }), none, none)[0];
+  // The drift of a random walk is the mean change: (last − first)/(n − 1).
+  expect(drift.percent).toBeCloseTo(100 * ((figures[47] / figures[0]) ** (1 / 47) - 1), 6);
+  expect(drift.units).toBeNull();
 });
 
 test('without a standard error there is neither a range nor a sensitivity', () => {
