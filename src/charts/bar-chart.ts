@@ -46,7 +46,7 @@ export function barChart({ bars, bound, ahead = false }: Bars, words: BarWords):
   const lines = bound === undefined ? [0] : [0, bound, -bound];
   const spec = {
     width: 262,
-    height: 84,
+    height: 64,
     layer: [
       ...lines.map((value) => ({
         data: { values: [{ value }] },

@@ -3,6 +3,7 @@ import type { TopLevelSpec } from 'vega-lite';
 import { periodIndex, periodText, position } from '../calendar/calendar.js';
 import type { BriefRecord } from '../record/record.js';
 import { draw, labelled } from './draw.js';
+import { eventMarks } from './event-marks.js';
 import { ACCENT, BAND, HAIRLINE, INK, LABEL, PAPER, QUIET } from './look.js';
 import { openTextWidth } from './metrics.js';
 import { niceTicks, tickPlaces } from './ticks.js';
@@ -79,16 +80,6 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
     (t) => position(first + t, every, plan.yearStarts) === 1,
   );
   const yearEvery = Math.ceil(years.length / 10);
-  const events = figures.events.flatMap(({ what, from, to }) => {
-    const [start, end] = [periodIndex(from, every) - first, to === null ? n - 1 : periodIndex(to, every) - first];
-    const seen = history.filter(({ t, y }) => t >= start && t <= end && y !== null);
-    const lowest = seen.reduce<(typeof seen)[number] | undefined>(
-      (a, b) => (a && (a.y ?? 0) <= (b.y ?? 0) ? a : b),
-      undefined,
-    );
-    return lowest === undefined ? [] : [{ t: lowest.t, y: lowest.y, what }];
-  });
-
   const end = ahead[ahead.length - 1];
   const endLabels = spread(
     [
@@ -120,9 +111,28 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
     axis: { values: ticks, labelExpr: labelled(ticks, (value) => words.number(value, places)), title: null },
   } as const;
   const point = (fields: string) => ({ x, y: { ...y, field: fields } });
-  // Neighbours on the rail stand in two rows where one is too narrow; with many periods every second, third … is named.
   const perStep = (WIDTH - LABELS - 44) / (steps + 0.8);
   const width = await openTextWidth();
+  const [bottom, top] = [ticks[0], ticks[ticks.length - 1]];
+  const events = eventMarks(
+    figures.events.map(({ what, from, to }) => ({
+      what,
+      from: periodIndex(from, every) - first,
+      to: to === null ? null : periodIndex(to, every) - first,
+    })),
+    {
+      least: n - shown,
+      most: n - 1,
+      perStep,
+      height,
+      heightOf: (t) => {
+        const value = figures.values[t] ?? null;
+        return value === null ? null : (height * (top - value)) / (top - bottom);
+      },
+      widthOf: (what) => width(what, { family: 'sans', size: LABEL, italic: true }),
+    },
+  );
+  // Neighbours on the rail stand in two rows where one is too narrow; with many periods every second, third … is named.
   const widest = Math.max(
     ...ahead.flatMap(({ name, label }) => [
       width(name, { family: 'sans', size: RAIL_NAME }),
@@ -140,6 +150,16 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
     height,
     autosize: { type: 'pad' },
     layer: [
+      {
+        data: { values: events.filter(({ to }) => to !== null) },
+        mark: { type: 'rect', color: HAIRLINE, opacity: 0.45 },
+        encoding: { x: { ...x, field: 'start' }, x2: { field: 'end' }, y: { value: 0 }, y2: { value: height } },
+      },
+      {
+        data: { values: events.filter(({ to }) => to === null) },
+        mark: { type: 'rule', color: QUIET, strokeWidth: 0.8 },
+        encoding: { x: { ...x, field: 'start' } },
+      },
       {
         data: { values: joined },
         mark: { type: 'area', color: BAND },
@@ -172,11 +192,11 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
         mark: { type: 'point', filled: true, color: ACCENT, size: 34, opacity: 1, stroke: PAPER, strokeWidth: 1 },
         encoding: { x, y },
       },
-      {
-        data: { values: events },
-        mark: { type: 'text', dy: 14, fontStyle: 'italic', color: QUIET, limit: 220 },
-        encoding: { x, y, text: { field: 'what' } },
-      },
+      ...events.map((event) => ({
+        data: { values: [event] },
+        mark: { type: 'text', fontStyle: 'italic', color: QUIET },
+        encoding: { x, y: { value: event.y }, text: { field: 'what' } },
+      })),
       ...endLabels.map((label) => ({
         data: { values: [label] },
         mark: { type: 'text', align: 'left', dx: 9, dy: label.shift, color: label.color, limit: LABELS - 6 },

@@ -13,7 +13,7 @@ export function residualsChart({ series, figures, fit, plan }: BriefRecord, word
   const first = periodIndex(figures.start, series.every);
   const points = fit.standardizedResiduals.flatMap((value, t) => (value === null ? [] : [{ t, value }]));
   const reach = Math.max(2.5, ...points.map(({ value }) => Math.abs(value)));
-  const ticks = niceTicks(-reach, reach, 5);
+  const ticks = niceTicks(-reach, reach, 3);
   const years = fit.standardizedResiduals.flatMap((_, t) =>
     position(first + t, series.every, plan.yearStarts) === 1 ? [t] : [],
   );
@@ -38,7 +38,7 @@ export function residualsChart({ series, figures, fit, plan }: BriefRecord, word
   } as const;
   const spec = {
     width: 262,
-    height: 84,
+    height: 64,
     layer: [
       { data: { values: [{ value: 0 }] }, mark: { type: 'rule', color: QUIET, strokeWidth: 0.8 }, encoding: { y } },
       {

@@ -22,6 +22,8 @@ export interface Printed {
   readonly places: number;
   readonly step: number;
   readonly periods: readonly PrintedRow[];
+  /** One for each of the outlook's totals by the year ahead; theirs add up to the total. */
+  readonly years: readonly PrintedRow[];
   readonly total: PrintedRow;
   readonly answer: {
     readonly places: number;
@@ -57,19 +59,29 @@ export function printedNumbers(outlook: Outlook, places: number, lastYears: read
       lastYears[h],
     ),
   );
-  const before = lastYears.every((value) => value !== null)
-    ? toNumber(sum(lastYears.map((value) => decimal(value ?? 0, places))))
-    : null;
+  const sumOf = (numbers: readonly number[], to: number) => toNumber(sum(numbers.map((number) => decimal(number, to))));
+  const beforeOf = (steps: readonly number[]) => {
+    const known = steps.flatMap((step) => lastYears[step] ?? []);
+    return known.length === steps.length ? sumOf(known, places) : null;
+  };
+  const summedOf = (steps: readonly number[]) =>
+    sumOf(
+      steps.map((step) => periods[step].expected),
+      shownPlaces,
+    );
+  const summary = ({ steps, range80, range95 }: Outlook['totals'][number]) => {
+    const to = Math.min(placesFor(width(range80), places), rowPlaces);
+    return row({ expected: summedOf(steps), range80: both(range80, to), range95: both(range95, to) }, beforeOf(steps));
+  };
+  const before = beforeOf(total.steps);
+  const summed = summedOf(total.steps);
   const totalPlaces = Math.min(placesFor(width(total.range80), places), rowPlaces);
-  const summed = toNumber(sum(periods.map(({ expected }) => decimal(expected, shownPlaces))));
   return {
     places: shownPlaces,
     step: 10 ** -rowPlaces,
     periods,
-    total: row(
-      { expected: summed, range80: both(total.range80, totalPlaces), range95: both(total.range95, totalPlaces) },
-      before,
-    ),
+    years: outlook.totals.filter(({ kind }) => kind === 'year-ahead').map(summary),
+    total: summary(total),
     answer: {
       places: Math.max(totalPlaces, 0),
       step: 10 ** -totalPlaces,

@@ -12,7 +12,7 @@ import { jointDeviates } from './paths.js';
 
 /** A sum over steps ahead (0 is the first), with what has already happened of it. */
 export interface Span {
-  readonly kind: 'ahead' | 'reporting-year';
+  readonly kind: 'ahead' | 'year-ahead' | 'reporting-year';
   readonly year: number | null;
   readonly known: number;
   readonly steps: readonly number[];

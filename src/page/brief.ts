@@ -12,9 +12,10 @@ import { checksOf, pastTable } from './checks.js';
 import { meaningRows } from './coefficients.js';
 import { pageStyle, plainText, withType } from './document.js';
 import { equationHtml } from './equation.js';
+import { figuresTable, periodsTable } from './figures-table.js';
 import { type Formats, formatsOf } from './formats.js';
 import { madeOf, sumTable } from './how-made.js';
-import { answerSentence, caveatSentences, countedPeriods, reasons } from './sentences.js';
+import { answerSentence, capital, caveatSentences, reasons } from './sentences.js';
 import type { Theme } from './theme.js';
 import { assumptionRows, trustSentences } from './trust.js';
 
@@ -30,12 +31,18 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   const { plan, series, outlook } = record;
   const span = formats.span(outlook.periods[0].period, outlook.periods[outlook.periods.length - 1].period);
   const every = theme.say(`every.${series.every}.one`);
-  const isLong = outlook.periods.length > MANY;
+  const figures = figuresTable(record, theme, formats);
+  const isLong = figures.rows.length > MANY;
+  const past = pastTable(record, theme, formats);
+  const annex = {
+    periods: periodsTable(record, theme, formats),
+    past: past.years * past.parts.length > MOST_PAST_ROWS ? past : null,
+  };
   const view = {
     lang: plan.locale,
     title: `${series.name}, ${span} · ${plan.preparedFor}`,
     style: await pageStyle(theme, plan.paper, {
-      left: theme.say('running', { series: series.name, brief: record.brief }),
+      left: theme.say('running', { series: shortened(series.name), brief: record.brief }),
       foot: theme.say('foot'),
       page: theme.say('page'),
       of: theme.say('of'),
@@ -51,7 +58,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     scope: theme.say('in-unit', { span, unit: series.unit }),
     answer: answerSentence(record, theme, formats),
     picture: await pictureOf(record, theme, formats, every),
-    figures: figuresTable(record, theme, formats, every),
+    figures,
     isLong,
     reasons: reasons(record, theme, formats),
     trust: trustSentences(record, theme, formats).join(' '),
@@ -65,7 +72,9 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     checks: await checksCharts(record, theme, formats),
     assumed: assumptionRows(record, theme, formats),
     data: checksOf(record, theme, formats),
-    past: pastTable(record, theme, formats),
+    past: annex.past === null ? past : null,
+    annexTitle: theme.say('annex.periods', { every }),
+    annex: annex.periods === null && annex.past === null ? null : annex,
     file: fileLines(record, theme, formats, options),
     disclaimer: theme.say('disclaimer'),
   };
@@ -85,8 +94,15 @@ async function trackOf(record: BriefRecord, theme: Theme, formats: Formats, ever
   return svg === null ? null : { title: theme.say('trust.picture.title', facts), svg };
 }
 
+/** A name that leaves room beside it in the running head. */
+const shortened = (name: string): string =>
+  [...name].length > 45 ? `${[...name].slice(0, 44).join('').trimEnd()}…` : name;
+
 /** More rows than this are set closer, so that page 1 stays one page. */
 const MANY = 6;
+
+/** More rows of past figures than this stand in the annex, so that the checks stay one page. */
+const MOST_PAST_ROWS = 15;
 
 async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, every: string) {
   const { series, figures, outlook, printed } = record;
@@ -119,42 +135,6 @@ async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, ev
       railName: (period) => formats.period(period, 'axis'),
       yearName: (period) => period.slice(0, 4),
     }),
-  };
-}
-
-const capital = (text: string): string => text.slice(0, 1).toLocaleUpperCase() + text.slice(1);
-
-function figuresTable({ series, outlook, printed }: BriefRecord, theme: Theme, formats: Formats, every: string) {
-  const and = ([low, high]: readonly [number, number], places: number) =>
-    theme.say('figures.and', { low: formats.number(low, places), high: formats.number(high, places) });
-  const row = (name: string, numbers: typeof printed.total, places: number, rangePlaces: number) => ({
-    name,
-    expected: formats.number(numbers.expected, places),
-    range: and(numbers.range80, rangePlaces),
-    lastYear: numbers.lastYear === null ? '–' : formats.number(numbers.lastYear, series.places),
-    change: numbers.change === null ? '–' : formats.change(numbers.change),
-  });
-  const count = outlook.periods.length;
-  return {
-    heads: {
-      period: theme.say(`figures.period.${series.every}`),
-      expected: theme.say('figures.expected'),
-      range: theme.say('figures.range'),
-      lastYear: theme.say('figures.last-year', { every }),
-      change: theme.say('figures.change'),
-    },
-    rows: outlook.periods.map(({ period }, h) =>
-      row(formats.period(period, 'short'), printed.periods[h], printed.places, printed.places),
-    ),
-    total:
-      count === 1
-        ? null
-        : row(
-            capital(countedPeriods(count, series.every, theme, formats)),
-            printed.total,
-            printed.places,
-            printed.answer.places,
-          ),
   };
 }
 

@@ -54,7 +54,10 @@ export function checksOf({ figures, fit, outlook, series, trackRecord }: BriefRe
   };
 }
 
-/** A row a reporting year, a column a position; one column where a year is one period. */
+/**
+ * A row a reporting year, a column a position; one column where a year is one period. Columns that the page is too
+ * narrow for go on in further parts.
+ */
 export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, formats: Formats) {
   const { every, season } = series;
   const first = periodIndex(figures.start, every);
@@ -82,15 +85,26 @@ export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, 
     };
     years.set(year, row);
   });
+  const columns = Array.from({ length: season }, (_, i) =>
+    season <= 12
+      ? formats.period(periodText(first - position(first, every, plan.yearStarts) + 1 + i, every), 'axis')
+      : `${i + 1}`,
+  );
+  const each = columnsAPart(
+    [...columns, ...[...years.values()].flatMap((cells) => cells.map(({ text }) => text))],
+    season,
+  );
   return {
     title: theme.say('checks.past.title'),
     year: theme.say('checks.past.year'),
-    columns: Array.from({ length: season }, (_, i) =>
-      season <= 12
-        ? formats.period(periodText(first - position(first, every, plan.yearStarts) + 1 + i, every), 'axis')
-        : `${i + 1}`,
-    ),
-    rows: [...years].map(([year, cells]) => ({ year: String(year), cells })),
+    parts: Array.from({ length: Math.ceil(season / each) }, (_, part) => ({
+      columns: columns.slice(part * each, (part + 1) * each),
+      rows: [...years].map(([year, cells]) => ({
+        year: String(year),
+        cells: cells.slice(part * each, (part + 1) * each),
+      })),
+    })),
+    years: years.size,
     note: [
       ...(marked.size > 0 ? ['checks.past.marked'] : []),
       ...(atLeast.size > 0 ? ['checks.past.at-least-note'] : []),
@@ -98,4 +112,16 @@ export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, 
       .map((key) => theme.say(key, { every: theme.say(`every.${every}.other`) }))
       .join(' '),
   };
+}
+
+/** In millimetres: the room beside the year, a digit of the table's type, and the gap between columns. */
+const ROOM = 160;
+const DIGIT = 1.55;
+const GAP = 2;
+
+/** As many columns as fit on the narrowest paper, and about as many in each part. */
+function columnsAPart(texts: readonly string[], columns: number): number {
+  const widest = Math.max(...texts.map((text) => text.length)) * DIGIT + GAP;
+  const parts = Math.ceil(columns / Math.max(1, Math.floor(ROOM / widest)));
+  return Math.ceil(columns / parts);
 }

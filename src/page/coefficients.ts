@@ -6,7 +6,7 @@ import type { Theme } from './theme.js';
 
 /** With what each was pulled towards, and where it would stand without, where the estimates are shrunk. */
 export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats) {
-  const { equation, fit, model, outlook, series } = record;
+  const { equation, fit, model, series } = record;
   const { priors } = model;
   return {
     title: theme.say('meaning.title'),
@@ -17,7 +17,7 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
       theme.say('meaning.likely'),
       ...(priors === null ? [] : [theme.say('meaning.towards'), theme.say('meaning.free')]),
       theme.say('meaning.says'),
-      theme.say('meaning.moves', { period: formats.period(outlook.periods[0].period, 'short') }),
+      theme.say('meaning.moves', { unit: series.unit }),
     ],
     rows: equation.meanings.map((meaning, i) => {
       const places = decimalsFor(meaning);
@@ -47,10 +47,10 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
 }
 
 /** In units, one place finer than they are shown where under ten; what is less still, as less than that. */
-function movesText(moves: number, { unit, places }: BriefRecord['series'], theme: Theme, formats: Formats): string {
+function movesText(moves: number, { places }: BriefRecord['series'], theme: Theme, formats: Formats): string {
   const finer = moves < 10 ? places + 1 : places;
   const least = 10 ** -finer;
-  const amount = theme.say('meaning.amount', { amount: formats.number(Math.max(moves, least), finer), unit });
+  const amount = formats.number(Math.max(moves, least), finer);
   return moves < least ? theme.say('meaning.moves-less', { amount }) : amount;
 }
 

@@ -14,6 +14,8 @@ export function countedPeriods(
   return `${number} ${theme.say(`every.${every}.${plural(formats, count)}`)}`;
 }
 
+export const capital = (text: string): string => text.slice(0, 1).toLocaleUpperCase() + text.slice(1);
+
 const plural = (formats: Formats, count: number): string => (formats.plural(count) === 'one' ? 'one' : 'other');
 
 export function answerSentence({ series, outlook, printed }: BriefRecord, theme: Theme, formats: Formats): string {

@@ -58,11 +58,15 @@ export async function loadTheme(locale: string, own: string | null = null): Prom
   environment.registerHelper('say', (key: string, { hash }: Handlebars.HelperOptions) => {
     return new environment.SafeString(say(key, hash));
   });
-  const page = (name: string): ((view: object) => string) => {
+  const page = (name: string): Handlebars.TemplateDelegate => {
     const text = their(name) ?? our(name) ?? '';
     checkTemplate(name, text);
     return environment.compile(text, { strict: true, preventIndent: true });
   };
+  for (const name of new Set([...ours.keys(), ...theirs.keys()])) {
+    const partial = /^partials\/(.+)\.hbs$/.exec(name)?.[1];
+    if (partial !== undefined) environment.registerPartial(partial, page(name));
+  }
   return {
     brief: page('brief.hbs'),
     cover: page('cover.hbs'),

@@ -45,7 +45,7 @@ function betterRule({ lastYearMiss, lastYearPlusChangeMiss }: NonNullable<BriefR
 }
 
 /** Whole per cent, and in words below one. */
-function missText(miss: number, theme: Theme, formats: Formats): string {
+export function missText(miss: number, theme: Theme, formats: Formats): string {
   return miss < 0.005 ? theme.say('trust.tiny') : formats.share(miss);
 }
 

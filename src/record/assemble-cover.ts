@@ -30,4 +30,11 @@ const rowOf = ({ record, sha256 }: FiledRecord) => ({
   span: [record.outlook.periods[0]?.period, record.outlook.periods.at(-1)?.period],
   answer: record.printed.answer,
   caveats: record.facts.caveats,
+  trackRecord: trackOf(record),
 });
+
+function trackOf({ trackRecord }: BriefRecord): CoverRecord['rows'][number]['trackRecord'] {
+  if (trackRecord === null) return null;
+  const { count, miss, inside80 } = trackRecord;
+  return { count, miss, inside80 };
+}

@@ -97,7 +97,7 @@ const outlookOf = (fit: Fit, inputs: BriefInputs): Outlook =>
     ahead: inputs.ahead,
     seed: seedOf(`${inputs.issued}/${inputs.series.slug}`),
     holdAtZero: inputs.figures.values.every((value) => value === null || value >= 0),
-    spans: [aheadSpan(inputs), ...reportingYears(inputs)],
+    spans: [aheadSpan(inputs), ...yearsAhead(inputs), ...reportingYears(inputs)],
   });
 
 const assumptionsOf = (fit: Fit, inputs: BriefInputs): BriefRecord['assumptions'] =>
@@ -145,6 +145,22 @@ const aheadSpan = ({ ahead }: BriefInputs): Span => ({
   known: 0,
   steps: Array.from({ length: ahead }, (_, step) => step),
 });
+
+/** More periods than this are shown by the year on page 1. */
+const MOST_ROWS = 13;
+
+function yearsAhead({ ahead, series }: BriefInputs): Span[] {
+  if (ahead <= MOST_ROWS) return [];
+  return Array.from({ length: Math.ceil(ahead / series.season) }, (_, year) => ({
+    kind: 'year-ahead',
+    year: null,
+    known: 0,
+    steps: Array.from(
+      { length: Math.min(series.season, ahead - year * series.season) },
+      (_, i) => year * series.season + i,
+    ),
+  }));
+}
 
 /** The reporting years that the periods ahead reach into and that figures and outlook together cover in full. */
 function reportingYears({ series, figures, plan, ahead }: BriefInputs): Span[] {

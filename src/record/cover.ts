@@ -22,6 +22,8 @@ export const coverSchema = z.strictObject({
       span: z.tuple([z.string(), z.string()]),
       answer: record.printed.shape.answer,
       caveats: record.facts.shape.caveats,
+      /** How forecasts made this way turned out; null where there are too few figures to tell. */
+      trackRecord: z.strictObject({ count: z.int(), miss: z.number().nullable(), inside80: z.number() }).nullable(),
     }),
   ),
 });

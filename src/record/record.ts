@@ -170,8 +170,11 @@ const outlookPeriod = z.strictObject({
 });
 
 const outlookTotal = z.strictObject({
-  /** `ahead`: all periods ahead. `reporting-year`: a reporting year, with what has already happened in it. */
-  kind: z.enum(['ahead', 'reporting-year']),
+  /**
+   * `ahead`: all periods ahead. `year-ahead`: each year's worth of them, where they are too many for a row each on
+   * page 1. `reporting-year`: a reporting year, with what has already happened in it.
+   */
+  kind: z.enum(['ahead', 'year-ahead', 'reporting-year']),
   /** For `reporting-year`, the year it starts in. */
   year: z.int().nullable(),
   periods: z.array(period),
@@ -234,6 +237,8 @@ const printed = z.strictObject({
   places: count,
   step: number,
   periods: z.array(printedRow),
+  /** One for each of the outlook's totals of the kind `year-ahead`; their expected values add up to the total's. */
+  years: z.array(printedRow),
   total: printedRow,
   /** The answer's numbers: the total, rounded by its own range. */
   answer: z.strictObject({

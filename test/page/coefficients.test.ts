@@ -75,5 +75,8 @@ test('the sentences say what the numbers are: a gain carried on, a surprise shar
     `About ${Math.round(100 * phi)}% of one quarter’s gain over last year carries into the next.`,
   );
   if (1 + Theta < 0.015) expect(ma.says).toContain('the same in all years');
-  else expect(ma.says).toContain(`about ${Math.round(100 * (1 + Theta))}% is taken into the season’s pattern`);
+  else
+    expect(ma.says).toContain(
+      `About ${Math.round(100 * (1 + Theta))}% of a surprise is taken into the season’s pattern`,
+    );
 });

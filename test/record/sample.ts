@@ -108,6 +108,7 @@ export function sampleRecord(changes: SampleChanges = {}): BriefRecord {
       places: 0,
       step: 1,
       periods: [printedRow],
+      years: [],
       total: printedRow,
       answer: { places: 0, step: 1, expected, range80: [200, 280], lastYear: 240, change: 0 },
     },
