@@ -6,17 +6,13 @@
 import type { Fit } from '../sarima/fit.js';
 import { type Prediction, predict } from '../sarima/predict.js';
 import { parseScale } from '../sarima/scale.js';
+import { ascending } from '../stats/sample.js';
 import { studentQuantile } from '../stats/student.js';
 import { type Calibration, calibrate } from './calibrate.js';
+import { type Expectation, expectation, PATHS, type Span, summed } from './expectation.js';
 import { jointDeviates } from './paths.js';
 
-/** A sum over steps ahead (0 is the first), with what has already happened of it. */
-export interface Span {
-  readonly kind: 'ahead' | 'year-ahead' | 'reporting-year';
-  readonly year: number | null;
-  readonly known: number;
-  readonly steps: readonly number[];
-}
+export type { Expectation, Span } from './expectation.js';
 
 export interface OutlookOptions {
   readonly ahead: number;
@@ -27,13 +23,6 @@ export interface OutlookOptions {
   readonly spans: readonly Span[];
   /** How each step's distribution is made; `calibrate` unless given. */
   readonly calibration?: (fit: Fit, prediction: Prediction) => Calibration;
-}
-
-export interface Expectation {
-  readonly expected: number;
-  readonly middle: number;
-  readonly range80: [number, number];
-  readonly range95: [number, number];
 }
 
 export interface Outlook {
@@ -47,8 +36,6 @@ export interface Outlook {
   readonly heldAtZero: boolean;
   readonly calibration: Calibration;
 }
-
-export const PATHS = 10_000;
 
 /** Off the plain scale the outermost quantile levels, so that a mean does not depend on how many paths there are. */
 const OUTERMOST = 0.001;
@@ -149,58 +136,8 @@ function sumsOf(fit: Fit, { mean }: Prediction, spans: readonly Span[]): number[
 function arranged(values: readonly Float64Array[], deviates: Float64Array): Float64Array {
   const matrix = new Float64Array(deviates.length);
   values.forEach((sorted, h) => {
-    const order = ranked(deviates.subarray(h * PATHS, (h + 1) * PATHS));
+    const order = ascending(deviates.subarray(h * PATHS, (h + 1) * PATHS));
     for (let k = 0; k < PATHS; k++) matrix[h * PATHS + order[k]] = sorted[k];
   });
   return matrix;
-}
-
-/** Room for a path's number beside its value: PATHS is below it. */
-const ROOM = 2 ** 14;
-
-/**
- * Which path holds the smallest value, the second smallest, … Each value, to 38 bits of the values' span, is sorted as
- * one whole number with its path's number behind it: many times faster than by comparing.
- */
-function ranked(values: Float64Array): Uint32Array {
-  let [least, most] = [Infinity, -Infinity];
-  for (const value of values) {
-    if (value < least) least = value;
-    if (value > most) most = value;
-  }
-  const fineness = most > least ? 2 ** 38 / (most - least) : 0;
-  const keys = values.map((value, i) => Math.round((value - least) * fineness) * ROOM + i).sort();
-  const order = new Uint32Array(keys.length);
-  for (let k = 0; k < order.length; k++) order[k] = keys[k] % ROOM;
-  return order;
-}
-
-function summed(matrix: Float64Array, { known, steps }: Span): Float64Array {
-  const total = new Float64Array(PATHS).fill(known);
-  for (const h of steps) for (let i = 0; i < PATHS; i++) total[i] += matrix[h * PATHS + i];
-  return total;
-}
-
-/** Mean, median and ranges of one row of paths, the smallest first. */
-function expectation(sorted: Float64Array): Expectation {
-  const at = (level: number) => {
-    // The k-th smallest stands at level (k − ½)/N.
-    const place = Math.min(Math.max(level * PATHS - 0.5, 0), PATHS - 1);
-    const below = Math.floor(place);
-    const above = Math.min(below + 1, PATHS - 1);
-    return sorted[below] + (place - below) * (sorted[above] - sorted[below]);
-  };
-  return {
-    expected: meanOf(sorted),
-    middle: at(0.5),
-    range80: [at(0.1), at(0.9)],
-    range95: [at(0.025), at(0.975)],
-  };
-}
-
-/** Summed in pairs from both ends, so that what mirrors about the centre cancels exactly. */
-function meanOf(sorted: Float64Array): number {
-  let sum = 0;
-  for (let i = 0, j = sorted.length - 1; i < j; i++, j--) sum += sorted[i] + sorted[j];
-  return sum / sorted.length;
 }
