@@ -3,6 +3,7 @@ export { dateText, dayNumber, dayOf, isDate } from './dates.js';
 export { type Every, everies, seasonOf } from './every.js';
 export { dateName, type NameStyle, periodName, positionName, spanName } from './names.js';
 export {
+  calendarYearOf,
   examplePeriod,
   isPeriod,
   kindsOf,

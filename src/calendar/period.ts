@@ -118,6 +118,12 @@ export const spanOf = (
   };
 };
 
+/** The calendar year that a whole period lies in; null where it runs over the turn of one. */
+export const calendarYearOf = (index: number, every: Every, yearStarts: number): number | null => {
+  const { from, to } = spanOf(periodText(index, every), every, yearStarts);
+  return from.slice(0, 4) === to.slice(0, 4) ? Number(from.slice(0, 4)) : null;
+};
+
 /**
  * The period that a day falls in, as text. A week or a four-week period is named by its first day, and a date alone
  * does not say where it begins: there the date is taken as the first day itself.

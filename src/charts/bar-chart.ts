@@ -17,13 +17,17 @@ export interface Bars {
   readonly bound?: number;
   /** Bars of the outlook's own kind are drawn in the accent. */
   readonly ahead?: boolean;
+  /** Of the plot, in px; half a page unless given. */
+  readonly width?: number;
 }
 
-export function barChart({ bars, bound, ahead = false }: Bars, words: BarWords): Promise<string> {
+export function barChart({ bars, bound, ahead = false, width = 262 }: Bars, words: BarWords): Promise<string> {
   const values = bars.map(({ value }) => value);
-  const ticks = niceTicks(Math.min(0, ...values, -(bound ?? 0)), Math.max(0, ...values, bound ?? 0), 4);
+  // With bounds on both sides the axis reaches as far on both.
+  const reach = bound === undefined ? 0 : Math.max(bound, ...values.map(Math.abs));
+  const ticks = niceTicks(Math.min(0, ...values, -reach), Math.max(0, ...values, reach), 4);
   const places = tickPlaces(ticks);
-  const every = Math.ceil(bars.length / 12);
+  const every = Math.ceil(bars.length / (width / 22));
   const steps = bars.map(({ step }) => step);
   const x = {
     field: 'step',
@@ -45,8 +49,8 @@ export function barChart({ bars, bound, ahead = false }: Bars, words: BarWords):
   } as const;
   const lines = bound === undefined ? [0] : [0, bound, -bound];
   const spec = {
-    width: 262,
-    height: 64,
+    width,
+    height: 54,
     layer: [
       ...lines.map((value) => ({
         data: { values: [{ value }] },

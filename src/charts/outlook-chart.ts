@@ -21,9 +21,6 @@ export interface OutlookWords {
 }
 
 export const WIDTH = 658;
-/** The plot's height: less where the table under it is long, so that both fit on the page. */
-const heightFor = (ahead: number, paper: BriefRecord['plan']['paper']): number =>
-  Math.max(paper === 'Letter' ? 84 : 104, (paper === 'Letter' ? 116 : 140) - 13 * Math.max(0, ahead - 4));
 /** The size of the names on the rail, and the room between two of them. */
 const RAIL_NAME = LABEL - 1.5;
 const RAIL_GAP = 2;
@@ -40,10 +37,10 @@ export function startsAtZero({ figures, outlook }: BriefRecord): boolean {
 const shownValues = (values: readonly (number | null)[], count: number): number[] =>
   values.slice(-count).filter((value) => value !== null);
 
-export async function outlookChart(record: BriefRecord, words: OutlookWords): Promise<string> {
+/** `height` is the plot's, in px. */
+export async function outlookChart(record: BriefRecord, words: OutlookWords, height: number): Promise<string> {
   const { series, figures, outlook, printed, plan } = record;
   const { every, season } = series;
-  const height = heightFor(outlook.periods.length, plan.paper);
   const shown = Math.min(figures.values.length, Math.max(5 * season, 12));
   const first = periodIndex(figures.start, every);
   const n = figures.values.length;
@@ -132,18 +129,26 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
       widthOf: (what) => width(what, { family: 'sans', size: LABEL, italic: true }),
     },
   );
-  // Neighbours on the rail stand in two rows where one is too narrow; with many periods every second, third … is named.
-  const widest = Math.max(
-    ...ahead.flatMap(({ name, label }) => [
-      width(name, { family: 'sans', size: RAIL_NAME }),
-      width(label, { family: 'sans', size: LABEL, weight: 600 }),
-    ]),
+  // Each period's number stands under it, in two rows where one is too narrow, and its name where that finds room on
+  // one row. With many periods every second, third … is shown, with its name.
+  const widest = (texts: readonly string[], size: number, weight: number) =>
+    Math.max(...texts.map((each) => width(each, { family: 'sans', size, weight }))) + RAIL_GAP;
+  const names = widest(
+    ahead.map(({ name }) => name),
+    RAIL_NAME,
+    400,
   );
-  const railLabel = widest + RAIL_GAP;
+  const numbers = widest(
+    ahead.map(({ label }) => label),
+    LABEL,
+    600,
+  );
+  const isNamed = names <= perStep || numbers > 2 * perStep;
+  const railLabel = isNamed ? Math.max(names, numbers) : numbers;
   const rows = perStep < railLabel ? 2 : 1;
   const railStep = Math.ceil(railLabel / (perStep * rows));
-  const rail = ahead.map((each, h) => ({ ...each, row: Math.floor(h / railStep) % rows, isNamed: h % railStep === 0 }));
-  const railRows = Array.from({ length: rows }, (_, row) => rail.filter((each) => each.row === row && each.isNamed));
+  const rail = ahead.map((each, h) => ({ ...each, row: Math.floor(h / railStep) % rows, isShown: h % railStep === 0 }));
+  const railRows = Array.from({ length: rows }, (_, row) => rail.filter((each) => each.row === row && each.isShown));
 
   const spec = {
     width: WIDTH - LABELS - 44,
@@ -199,21 +204,21 @@ export async function outlookChart(record: BriefRecord, words: OutlookWords): Pr
       })),
       ...endLabels.map((label) => ({
         data: { values: [label] },
-        mark: { type: 'text', align: 'left', dx: 9, dy: label.shift, color: label.color, limit: LABELS - 6 },
+        mark: { type: 'text', align: 'left', dx: 13, dy: label.shift, color: label.color, limit: LABELS - 6 },
         encoding: { x, y, text: { field: 'text' } },
       })),
-      ...railRows.flatMap((values, row) => [
-        {
+      ...railRows.flatMap((values, row) => {
+        const top = height + 32 + (isNamed ? 28 : 13) * row;
+        const text = (field: string, y: number, mark: object) => ({
           data: { values },
-          mark: { type: 'text', color: QUIET, fontSize: RAIL_NAME },
-          encoding: { x, y: { value: height + 32 + 28 * row }, text: { field: 'name' } },
-        },
-        {
-          data: { values },
-          mark: { type: 'text', color: ACCENT, fontWeight: 600 },
-          encoding: { x, y: { value: height + 45 + 28 * row }, text: { field: 'label' } },
-        },
-      ]),
+          mark: { type: 'text', ...mark },
+          encoding: { x, y: { value: y }, text: { field } },
+        });
+        return [
+          ...(isNamed ? [text('name', top, { color: QUIET, fontSize: RAIL_NAME })] : []),
+          text('label', isNamed ? top + 13 : top, { color: ACCENT, fontWeight: 600 }),
+        ];
+      }),
     ],
   };
   return draw(spec as unknown as TopLevelSpec, { described: words.described });

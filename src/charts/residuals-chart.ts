@@ -38,7 +38,7 @@ export function residualsChart({ series, figures, fit, plan }: BriefRecord, word
   } as const;
   const spec = {
     width: 262,
-    height: 64,
+    height: 54,
     layer: [
       { data: { values: [{ value: 0 }] }, mark: { type: 'rule', color: QUIET, strokeWidth: 0.8 }, encoding: { y } },
       {

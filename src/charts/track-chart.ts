@@ -27,7 +27,8 @@ export function trackChart({ trackRecord }: BriefRecord, words: TrackWords): Pro
     isInside: actual >= range80[0] && actual <= range80[1],
   }));
   const ends = points.flatMap(({ low, high, actual }) => [low, high, actual]);
-  const ticks = niceTicks(Math.min(...ends), Math.max(...ends), 3);
+  const reach = niceTicks(0, Math.max(...ends.map(Math.abs)), 2);
+  const ticks = [-reach[reach.length - 1], 0, reach[reach.length - 1]];
   const last = points.length - 1;
   const names = [0, last].map((i) => `datum.value === ${i} ? ${JSON.stringify(words.periodName(shown[i].period))}`);
   const x = {
@@ -38,7 +39,7 @@ export function trackChart({ trackRecord }: BriefRecord, words: TrackWords): Pro
   } as const;
   const y = {
     type: 'quantitative',
-    scale: { domain: [Math.min(ticks[0], ...ends), Math.max(ticks[ticks.length - 1], ...ends)], nice: false },
+    scale: { domain: [ticks[0], ticks[2]], nice: false },
     axis: { values: ticks, labelExpr: labelled(ticks, words.share), title: null },
   } as const;
   const dot = { type: 'point', filled: true, size: 22, opacity: 1, stroke: INK, strokeWidth: 1 } as const;

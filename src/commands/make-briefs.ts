@@ -7,6 +7,7 @@ import type { Printer } from '../page/print.js';
 import {
   type FiledRecord,
   type Files,
+  filedKinds,
   filedRecords,
   type Kind,
   nextReplaced,
@@ -14,12 +15,15 @@ import {
   stageFiles,
 } from '../record/archive.js';
 import { ArchiveError } from '../record/archive-error.js';
-import { assemble } from '../record/assemble.js';
+import { assembleWithMoney, moneyOfRecord } from '../record/assemble.js';
 import { assembleCover } from '../record/assemble-cover.js';
+import type { Money } from '../record/assemble-decisions.js';
 import { canonicalJson, sha256 } from '../record/canonical.js';
+import { budgetCsv, ordersCsv } from '../record/cover-csv.js';
 import { figuresCsv } from '../record/figures-csv.js';
 import { planPart } from '../record/inputs.js';
 import type { LedgerEntry } from '../record/ledger.js';
+import type { BriefRecord } from '../record/record.js';
 import { SOFTWARE } from './software.js';
 import { missingKinds, type Task } from './tasks.js';
 import { folderOf, type Work } from './work.js';
@@ -27,6 +31,8 @@ import { folderOf, type Work } from './work.js';
 /** What has been staged so far. */
 export interface Made {
   readonly records: Map<string, FiledRecord>;
+  /** Of the records made anew that have a budget. */
+  readonly money: Map<string, Money>;
   readonly entries: LedgerEntry[];
   /** Files that the new ones leave without a counterpart. */
   readonly removals: string[];
@@ -40,7 +46,7 @@ export async function makeBriefs(work: Work, tasks: readonly Task[], printer: Pr
   const { plan, archive, options, report } = work;
   const replaces = tasks.some(({ there, filed }) => there !== null && filed === null);
   const replaced = replaces ? await nextReplaced(archive, plan.issued) : null;
-  const made: Made = { records: new Map(), entries: [], removals: [], failures: [], replaced };
+  const made: Made = { records: new Map(), money: new Map(), entries: [], removals: [], failures: [], replaced };
   for (const [i, task] of tasks.entries()) {
     options.signal?.throwIfAborted();
     report.progress(i, tasks.length, task.series.name);
@@ -58,7 +64,7 @@ export async function makeBriefs(work: Work, tasks: readonly Task[], printer: Pr
 async function makeBrief(work: Work, task: Task, printer: Printer | null, made: Made): Promise<void> {
   const { plan, archive, options } = work;
   const { slug } = task.series;
-  const filed = task.filed ?? recordOf(task, folderOf(work));
+  const filed = task.filed ?? recordOf(task, folderOf(work), made);
   const files = await filesOf(work, task, filed, printer);
   if (task.filed !== null && task.there !== null) {
     const missing = missingKinds(task.there, options);
@@ -73,8 +79,9 @@ async function makeBrief(work: Work, task: Task, printer: Printer | null, made: 
   made.records.set(slug, filed);
 }
 
-function recordOf({ inputs }: Task, folder: string): FiledRecord {
-  const record = assemble(inputs, { version: SOFTWARE.version, folder });
+function recordOf({ inputs }: Task, folder: string, made: Made): FiledRecord {
+  const { record, money } = assembleWithMoney(inputs, { version: SOFTWARE.version, folder });
+  if (money !== null) made.money.set(record.series.slug, money);
   return { record, sha256: sha256(canonicalJson(record)) };
 }
 
@@ -100,13 +107,12 @@ const withoutCounterpart = (there: readonly Kind[], files: Files, path: string):
   there.filter((kind) => files[kind] === undefined).map((kind) => `${path}.${kind}`);
 
 /**
- * Stages the cover, which shows every brief of the folder, in the plan's order and then by name. Gives the files of
- * the cover before it that are not made anew.
+ * Stages what all series share: the cover, which shows every brief of the folder, in the plan's order and then by name,
+ * the order list and the budget. Gives the files of those before them that are not made anew.
  */
 export async function stageCover(
   work: Work,
-  { records, replaced }: Made,
-  there: readonly Kind[],
+  { records, money, replaced }: Made,
   printer: Printer | null,
 ): Promise<string[]> {
   const { plan, theme, archive, options } = work;
@@ -116,10 +122,29 @@ export async function stageCover(
   const planned = plan.series.map(({ slug }) => slug);
   const unplanned = [...all.keys()].filter((slug) => !planned.includes(slug)).sort();
   const briefs = [...planned, ...unplanned].flatMap((slug) => all.get(slug) ?? []);
-  const cover = assembleCover(plan.issued, planPart(plan, theme.sha256), SOFTWARE, briefs);
+  const moneyOf = (record: BriefRecord) => money.get(record.series.slug) ?? moneyOfRecord(record);
+  const cover = assembleCover(plan.issued, planPart(plan, theme.sha256), SOFTWARE, briefs, moneyOf);
   const html = await renderCover(cover, theme, { trial: options.trial === true });
-  const files: Files = { html, ...(await printed(html, plan.issued, printer)), json: canonicalJson(cover) };
-  if (replaced !== null) await setAside(archive, folder, 'cover', replaced);
-  await stageFiles(archive, folder, 'cover', files);
-  return withoutCounterpart(there, files, `${folder}/cover`);
+  const shared: Record<(typeof SHARED)[number], Files> = {
+    cover: { html, ...(await printed(html, plan.issued, printer)), json: canonicalJson(cover) },
+    orders: csvFiles(ordersCsv(cover)),
+    budget: csvFiles(
+      budgetCsv(
+        cover,
+        briefs.map(({ record }) => record),
+      ),
+    ),
+  };
+  const stale: string[] = [];
+  for (const name of SHARED) {
+    const there = options.trial ? [] : await filedKinds(archive, folder, name);
+    if (replaced !== null) await setAside(archive, folder, name, replaced);
+    await stageFiles(archive, folder, name, shared[name]);
+    stale.push(...withoutCounterpart(there, shared[name], `${folder}/${name}`));
+  }
+  return stale;
 }
+
+const SHARED = ['cover', 'orders', 'budget'] as const;
+
+const csvFiles = (csv: string | null): Files => (csv === null ? {} : { csv });

@@ -21,7 +21,7 @@ import { makeBriefs, stageCover } from './make-briefs.js';
 import { planTheme } from './plan-theme.js';
 import { readPlanned } from './read-planned.js';
 import { tasksOf } from './tasks.js';
-import { folderOf, type Reporter, SILENT, type Work, type WriteOptions } from './work.js';
+import { folderOf, SILENT, type Work, type WriteOptions } from './work.js';
 
 export interface WriteResult {
   /** Absolute paths of the files to open, the cover first. */
@@ -36,7 +36,6 @@ export interface WriteResult {
 export async function writeBriefs(planPath: string, options: WriteOptions = {}): Promise<WriteResult> {
   const report = options.report ?? SILENT;
   const { plan, wanted, figures } = await readPlanned(planPath, options.only ?? []);
-  for (const series of wanted) sayWhatIsLeftAside(series, report);
 
   const theme = await planTheme(plan);
   const folder = resolve(options.out ?? join(dirname(resolve(plan.path)), 'out'));
@@ -68,7 +67,7 @@ async function write(work: Work): Promise<WriteResult> {
     options.signal?.throwIfAborted();
     const stands = made.records.size + unchanged.length > 0;
     if (made.records.size > 0 || (stands && !coverKinds.includes('html'))) {
-      const stale = await stageCover(work, made, coverKinds, printer);
+      const stale = await stageCover(work, made, printer);
       options.signal?.throwIfAborted();
       await keepTemplates(archive, work.theme.sha256, work.theme.own);
       if (options.trial) await fileTrial(archive);
@@ -92,18 +91,6 @@ async function checkFirm(archive: Archive, plan: Plan): Promise<void> {
   if (filed !== null && filed !== plan.preparedFor)
     throw new ArchiveError(
       `${archive.folder} holds the briefs of "${filed}", and this plan is prepared for "${plan.preparedFor}": choose another folder with --out`,
-    );
-}
-
-function sayWhatIsLeftAside({ name, judgement, purchase, budget }: PlannedSeries, { message }: Reporter): void {
-  const aside = [
-    ...(judgement.length > 0 ? ['the judgement'] : []),
-    ...(purchase === null ? [] : ['the purchase']),
-    ...(budget === null ? [] : ['the budget']),
-  ];
-  if (aside.length > 0)
-    message(
-      `series "${name}": ${aside.join(' and ')} in the plan is kept for a later version; this brief makes no use of it`,
     );
 }
 

@@ -14,9 +14,10 @@ import { typeset } from './typeset.js';
 import { pastWeights } from './weights.js';
 import { workedSum } from './worked-sum.js';
 
-export function explain(fit: Fit, outlook: Outlook, context: Context) {
+/** `alone` is what the figures alone say, which the equation explains; `outlook` what the brief says. */
+export function explain(fit: Fit, { alone, outlook }: { alone: Outlook; outlook: Outlook }, context: Context) {
   return {
-    equation: equationOf(fit, outlook, context),
+    equation: equationOf(fit, alone, context),
     printed: printedNumbers(outlook, context.places, lastYears(fit, outlook, context)),
     facts: factsOf(fit, outlook, context),
   };

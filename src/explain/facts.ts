@@ -7,9 +7,11 @@ import type { Context } from './context.js';
 
 export interface Facts {
   readonly direction: {
-    readonly kind: 'rising' | 'falling' | 'level' | 'unknown';
+    readonly kind: 'rising' | 'falling' | 'level' | 'uneven' | 'unknown';
     readonly perYear: number | null;
     readonly years: number;
+    /** The lowest and the highest of the yearly totals; null if unknown. */
+    readonly span: [number, number] | null;
   };
   readonly season: {
     readonly strength: 'strong' | 'weak' | 'none';
@@ -73,11 +75,14 @@ function directionOf({ values }: Fit, { season }: Context): Facts['direction'] {
   }
   const years = sums.length - 1;
   const [last, first] = [sums[0], sums[years]];
-  if (years < 1 || !(last > 0) || !(first > 0)) return { kind: 'unknown', perYear: null, years: Math.max(years, 0) };
+  if (years < 1 || !(last > 0) || !(first > 0))
+    return { kind: 'unknown', perYear: null, years: Math.max(years, 0), span: null };
   const perYear = (last / first) ** (1 / years) - 1;
-  // Under 1% a year nobody acts on it.
-  const kind = Math.abs(perYear) < 0.01 ? 'level' : perYear > 0 ? 'rising' : 'falling';
-  return { kind, perYear, years };
+  const span: [number, number] = [Math.min(...sums), Math.max(...sums)];
+  // Under 1% a year nobody acts on it; a total that went 5% up or down between has not been level for that.
+  const isLevel = Math.abs(perYear) < 0.01;
+  const kind = isLevel ? (span[1] > 1.05 * span[0] ? 'uneven' : 'level') : perYear > 0 ? 'rising' : 'falling';
+  return { kind, perYear, years, span };
 }
 
 /** Shares of the year by position over the latest full reporting years, at most five. Null without two such years. */
@@ -178,7 +183,16 @@ function caveatsOf(fit: Fit, { season, events, periods }: Context, relativeRange
     ...(fit.soldOut.length > 0
       ? [{ ...none, id: 'sold-out' as const, count: fit.soldOut.length, ...soldOutSpan(fit, periods) }]
       : []),
-    ...(missing > 0 ? [{ ...none, id: 'missing-figures' as const, count: missing }] : []),
+    ...(missing > 0
+      ? [
+          {
+            ...none,
+            id: 'missing-figures' as const,
+            count: missing,
+            from: periods[fit.values.findIndex(Number.isNaN)],
+          },
+        ]
+      : []),
     ...events.map(({ what, from, to, effect }) => ({
       ...none,
       id: effect === 'passing' ? ('event-set-aside' as const) : ('lasting-event' as const),

@@ -96,7 +96,7 @@ export function printedNumbers(outlook: Outlook, places: number, lastYears: read
 const width = ([low, high]: readonly [number, number]): number => high - low;
 
 /** Decimal places (negative: tens, hundreds) that a range of this width warrants, `most` at the finest. */
-function placesFor(range: number, most: number): number {
+export function placesFor(range: number, most: number): number {
   if (!(range > 0)) return most;
   return Math.min(-Math.floor(Math.log10(range / 10) + 1e-12), most);
 }

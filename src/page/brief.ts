@@ -8,6 +8,7 @@ import { outlookChart, startsAtZero } from '../charts/outlook-chart.js';
 import { residualsChart } from '../charts/residuals-chart.js';
 import { trackChart } from '../charts/track-chart.js';
 import type { BriefRecord } from '../record/record.js';
+import { budgetSentence, budgetView } from './budget.js';
 import { checksOf, pastTable } from './checks.js';
 import { meaningRows } from './coefficients.js';
 import { pageStyle, plainText, withType } from './document.js';
@@ -15,6 +16,8 @@ import { equationHtml } from './equation.js';
 import { figuresTable, periodsTable } from './figures-table.js';
 import { type Formats, formatsOf } from './formats.js';
 import { madeOf, sumTable } from './how-made.js';
+import { judgedSentences, judgementView } from './judgement.js';
+import { orderReason, orderSentence, orderView } from './order.js';
 import { answerSentence, capital, caveatSentences, reasons } from './sentences.js';
 import type { Theme } from './theme.js';
 import { assumptionRows, trustSentences } from './trust.js';
@@ -33,10 +36,11 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   const every = theme.say(`every.${series.every}.one`);
   const figures = figuresTable(record, theme, formats);
   const isLong = figures.rows.length > MANY;
+  const room = roomOf(record, figures.rows.length);
   const past = pastTable(record, theme, formats);
   const annex = {
     periods: periodsTable(record, theme, formats),
-    past: past.years * past.parts.length > MOST_PAST_ROWS ? past : null,
+    past: past.height > MOST_PAST_ROWS ? past : null,
   };
   const view = {
     lang: plan.locale,
@@ -57,13 +61,18 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     name: series.name,
     scope: theme.say('in-unit', { span, unit: series.unit }),
     answer: answerSentence(record, theme, formats),
-    picture: await pictureOf(record, theme, formats, every),
+    judged: judgedSentences(record, theme, formats),
+    todo: todoOf(record, theme, formats),
+    picture: await pictureOf(record, theme, formats, every, room.picture),
     figures,
     isLong,
+    isFull: room.isFull,
     reasons: reasons(record, theme, formats),
     trust: trustSentences(record, theme, formats).join(' '),
-    track: isLong ? null : await trackOf(record, theme, formats, every),
+    track: room.hasTrack ? await trackOf(record, theme, formats, every) : null,
     caveats: caveatSentences(record, theme, formats),
+    decision: await decisionOf(record, theme, formats),
+    judgement: judgementView(record, theme, formats),
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
     sum: sumTable(record, theme, formats),
     meanings: meaningRows(record, theme, formats),
@@ -79,6 +88,26 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     disclaimer: theme.say('disclaimer'),
   };
   return withType(theme.brief(view));
+}
+
+/** Page 1's answer to what to do; null where neither an order nor a budget was asked for. */
+function todoOf(record: BriefRecord, theme: Theme, formats: Formats) {
+  const { purchase, budget } = record;
+  if (purchase === null && budget === null) return null;
+  return {
+    title: theme.say('todo.title'),
+    order:
+      purchase === null
+        ? null
+        : { answer: orderSentence(record, theme, formats), why: orderReason(record, theme, formats) },
+    budget: budget === null ? null : { answer: budgetSentence(record, theme, formats) },
+  };
+}
+
+async function decisionOf(record: BriefRecord, theme: Theme, formats: Formats) {
+  const order = await orderView(record, theme, formats);
+  const budget = budgetView(record, theme, formats);
+  return order === null && budget === null ? null : { order, budget };
 }
 
 /** The picture beside the track record's sentences; null where there is none to draw. */
@@ -104,7 +133,24 @@ const MANY = 6;
 /** More rows of past figures than this stand in the annex, so that the checks stay one page. */
 const MOST_PAST_ROWS = 15;
 
-async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, every: string) {
+/** The plot of a chart beside the equations, in px of its own. */
+const NARROW = 172;
+
+/** How page 1 shares its height: what is asked for and many rows leave less to the pictures, and Letter less still. */
+function roomOf({ plan, purchase, budget, judgement }: BriefRecord, rows: number) {
+  const isLetter = plan.paper === 'Letter';
+  const asked = [purchase, budget, judgement].filter((part) => part !== null).length;
+  const isFull = asked > 0;
+  const height = 140 - 13 * Math.max(0, rows - 4) - 16 * asked - (isLetter ? 24 : 0);
+  return {
+    isFull,
+    picture: Math.max(isLetter ? 76 : 92, height),
+    hasTrack: rows <= MANY && asked + (isLetter ? 2 : 0) < 3,
+  };
+}
+
+/** `height` is the plot's, in px. */
+async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, every: string, height: number) {
   const { series, figures, outlook, printed } = record;
   const last = outlook.periods[outlook.periods.length - 1].period;
   const periods = outlook.periods.map(({ period }, h) => ({ period, value: printed.periods[h].expected }));
@@ -126,15 +172,19 @@ async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, ev
   return {
     title: theme.say('picture.title', { unit: capital(series.unit), every, end }),
     note: startsAtZero(record) ? null : theme.say('picture.not-from-zero'),
-    svg: await outlookChart(record, {
-      described: plainText(described),
-      eight: theme.say('picture.eight'),
-      nineteen: theme.say('picture.nineteen'),
-      lastYear: theme.say('picture.last-year'),
-      number: formats.number,
-      railName: (period) => formats.period(period, 'axis'),
-      yearName: (period) => period.slice(0, 4),
-    }),
+    svg: await outlookChart(
+      record,
+      {
+        described: plainText(described),
+        eight: theme.say('picture.eight'),
+        nineteen: theme.say('picture.nineteen'),
+        lastYear: theme.say('picture.last-year'),
+        number: formats.number,
+        railName: (period) => formats.period(period, 'axis'),
+        yearName: (period) => period.slice(0, 4),
+      },
+      height,
+    ),
   };
 }
 
@@ -144,7 +194,7 @@ async function weightsOf({ series, equation }: BriefRecord, theme: Theme, format
   return {
     title: theme.say('weights.title', { every: many }),
     svg: await barChart(
-      { bars: equation.weights.map(({ lag, weight }) => ({ step: lag, value: weight })) },
+      { bars: equation.weights.map(({ lag, weight }) => ({ step: lag, value: weight })), width: NARROW },
       {
         described: theme.say('weights.described', {
           count: equation.weights.length,
@@ -164,7 +214,7 @@ async function echoOf({ series, equation }: BriefRecord, theme: Theme, formats: 
   return {
     title: theme.say('echo.title'),
     svg: await barChart(
-      { bars: equation.echo.map(({ step, effect }) => ({ step, value: effect })), ahead: true },
+      { bars: equation.echo.map(({ step, effect }) => ({ step, value: effect })), ahead: true, width: NARROW },
       {
         described: theme.say('echo.described', {
           every: many,
@@ -220,14 +270,16 @@ async function checksCharts(record: BriefRecord, theme: Theme, formats: Formats)
 function fileLines(record: BriefRecord, theme: Theme, formats: Formats, { fingerprint }: BriefOptions): string[] {
   const { fit, plan, figures, software, series } = record;
   return [
-    theme.say('checks.file.fit', {
+    theme.say(fit.aicc === null ? 'checks.file.fit-without' : 'checks.file.fit', {
       likelihood: formats.number(fit.logLikelihood, 2),
       aicc: fit.aicc === null ? '–' : formats.number(fit.aicc, 2),
       observations: fit.observations,
       variance: Number(fit.innovationVariance.toPrecision(4)).toString(),
     }),
     theme.say('checks.file.fingerprint', { brief: series.slug, fingerprint }),
-    theme.say('checks.file.program', { version: software.version, figures: figures.sha256 }),
-    ...(plan.preparedBy === null ? [] : [theme.say('prepared', { by: plan.preparedBy })]),
+    [
+      theme.say('checks.file.program', { version: software.version, figures: figures.sha256 }),
+      ...(plan.preparedBy === null ? [] : [theme.say('prepared', { by: plan.preparedBy })]),
+    ].join(' · '),
   ];
 }

@@ -32,11 +32,11 @@ export function checksOf({ figures, fit, outlook, series, trackRecord }: BriefRe
       seed: String(outlook.seed),
       every: theme.say(`every.${series.every}.other`),
       freedom: formats.number(freedom, 0),
-      times: formats.number(first, 2),
-      fitted: formats.number(factors.freedom, 2),
-      estimates: formats.number(factors.estimates[0], 2),
-      recent: formats.number(factors.recent, 2),
-      horizon: formats.number(factors.horizon[0], 2),
+      times: formats.number(first, 3),
+      fitted: formats.number(factors.freedom, 3),
+      estimates: formats.number(factors.estimates[0], 3),
+      recent: formats.number(factors.recent, 3),
+      horizon: formats.number(factors.horizon[0], 3),
     }),
     ...(trackRecord === null
       ? []
@@ -55,8 +55,8 @@ export function checksOf({ figures, fit, outlook, series, trackRecord }: BriefRe
 }
 
 /**
- * A row a reporting year, a column a position; one column where a year is one period. Columns that the page is too
- * narrow for go on in further parts.
+ * A row a reporting year, a column a position; one column where a year is one period. A narrow table stands in two
+ * halves beside each other; columns that the page is too narrow for go on in further parts.
  */
 export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, formats: Formats) {
   const { every, season } = series;
@@ -90,21 +90,24 @@ export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, 
       ? formats.period(periodText(first - position(first, every, plan.yearStarts) + 1 + i, every), 'axis')
       : `${i + 1}`,
   );
-  const each = columnsAPart(
-    [...columns, ...[...years.values()].flatMap((cells) => cells.map(({ text }) => text))],
-    season,
-  );
+  const texts = [...columns, ...[...years.values()].flatMap((cells) => cells.map(({ text }) => text))];
+  const widest = Math.max(...texts.map((text) => text.length)) * DIGIT + GAP;
+  const each = columnsAPart(widest, season);
+  const rows = [...years].map(([year, cells]) => ({ year: String(year), cells }));
+  const halfway = Math.ceil(rows.length / 2);
+  const isBeside = season * widest <= HALF_ROOM && rows.length > 6;
+  const parts = isBeside
+    ? [rows.slice(0, halfway), rows.slice(halfway)].map((half) => ({ columns, rows: half }))
+    : Array.from({ length: Math.ceil(season / each) }, (_, part) => ({
+        columns: columns.slice(part * each, (part + 1) * each),
+        rows: rows.map(({ year, cells }) => ({ year, cells: cells.slice(part * each, (part + 1) * each) })),
+      }));
   return {
     title: theme.say('checks.past.title'),
     year: theme.say('checks.past.year'),
-    parts: Array.from({ length: Math.ceil(season / each) }, (_, part) => ({
-      columns: columns.slice(part * each, (part + 1) * each),
-      rows: [...years].map(([year, cells]) => ({
-        year: String(year),
-        cells: cells.slice(part * each, (part + 1) * each),
-      })),
-    })),
-    years: years.size,
+    parts,
+    isBeside,
+    height: isBeside ? halfway : parts.length * rows.length,
     note: [
       ...(marked.size > 0 ? ['checks.past.marked'] : []),
       ...(atLeast.size > 0 ? ['checks.past.at-least-note'] : []),
@@ -114,14 +117,15 @@ export function pastTable({ series, figures, plan }: BriefRecord, theme: Theme, 
   };
 }
 
-/** In millimetres: the room beside the year, a digit of the table's type, and the gap between columns. */
+/** In millimetres: the room beside the year on the narrowest paper, and on half of it. */
 const ROOM = 160;
+const HALF_ROOM = 70;
+/** A digit of the table's type, and the gap between columns. */
 const DIGIT = 1.55;
 const GAP = 2;
 
-/** As many columns as fit on the narrowest paper, and about as many in each part. */
-function columnsAPart(texts: readonly string[], columns: number): number {
-  const widest = Math.max(...texts.map((text) => text.length)) * DIGIT + GAP;
+/** As many columns as fit, and about as many in each part. */
+function columnsAPart(widest: number, columns: number): number {
   const parts = Math.ceil(columns / Math.max(1, Math.floor(ROOM / widest)));
   return Math.ceil(columns / parts);
 }

@@ -17,7 +17,7 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
       theme.say('meaning.likely'),
       ...(priors === null ? [] : [theme.say('meaning.towards'), theme.say('meaning.free')]),
       theme.say('meaning.says'),
-      theme.say('meaning.moves', { unit: series.unit }),
+      theme.say('meaning.moves'),
     ],
     rows: equation.meanings.map((meaning, i) => {
       const places = decimalsFor(meaning);
@@ -36,13 +36,17 @@ export function meaningRows(record: BriefRecord, theme: Theme, formats: Formats)
         moves: moves === null ? '–' : movesText(Math.abs(moves), series, theme, formats),
       };
     }),
-    pulled:
-      priors === null
-        ? null
-        : theme.say('meaning.pulled', {
-            count: formats.number(fit.coefficients.length, 0),
-            effective: formats.number(fit.effectiveCoefficients, 1),
-          }),
+    notes: [
+      theme.say('meaning.moves-note', { unit: series.unit }),
+      ...(priors === null
+        ? []
+        : [
+            theme.say('meaning.pulled', {
+              count: formats.number(fit.coefficients.length, 0),
+              effective: formats.number(fit.effectiveCoefficients, 1),
+            }),
+          ]),
+    ].join(' '),
   };
 }
 
@@ -80,12 +84,16 @@ function meaningSentence(
   theme: Theme,
   formats: Formats,
 ): string {
-  if (meaning.size === 'none') return theme.say('meaning.none', { symbol });
+  if (meaning.size === 'none')
+    return theme.say(isUncertain(meaning) ? 'meaning.none-uncertain' : 'meaning.none', { symbol });
   const says = sentenceOf(record, meaning, theme, formats);
   const isLevel = meaning.role === 'constant' && constantKey(record, meaning) === 'level';
   const mayBeNothing = !isLevel && meaning.range !== null && meaning.range[0] <= 0 && meaning.range[1] >= 0;
   return mayBeNothing ? `${says} ${theme.say('meaning.may-be-nothing')}` : says;
 }
+
+/** Whether it could be large enough to show, on either side. */
+const isUncertain = ({ range }: Meaning): boolean => range !== null && Math.max(-range[0], range[1]) > 1 / 3;
 
 function sentenceOf(record: BriefRecord, meaning: Meaning, theme: Theme, formats: Formats): string {
   const every = theme.say(`every.${record.series.every}.one`);

@@ -1,6 +1,7 @@
 /** The cover: all series of a dated folder on one sheet. */
 import { sparkline } from '../charts/sparkline.js';
 import type { CoverRecord } from '../record/cover.js';
+import { budgetTables, ordersTable } from './cover-money.js';
 import { pageStyle, plainText, withType } from './document.js';
 import { type Formats, formatsOf } from './formats.js';
 import { capital } from './sentences.js';
@@ -14,6 +15,7 @@ export async function renderCover(cover: CoverRecord, theme: Theme, { trial }: {
   const { plan, issued, rows } = cover;
   const dated = formatsOf(plan, 'quarter');
   const date = dated.date(issued);
+  const moneyFormats = formatsOf(plan, rows[0]?.series.every ?? 'quarter');
   const count = rows.length;
   const spans = rows.map(({ series, span }) => formatsOf(plan, series.every).span(...span));
   // What is true of every row is said once.
@@ -64,6 +66,8 @@ export async function renderCover(cover: CoverRecord, theme: Theme, { trial }: {
         };
       }),
     ),
+    orders: ordersTable(cover, theme, moneyFormats),
+    budget: budgetTables(cover, theme, moneyFormats),
     preparedBy: plan.preparedBy === null ? null : theme.say('prepared', { by: plan.preparedBy }),
     disclaimer: theme.say('disclaimer'),
   };

@@ -18,18 +18,19 @@ export function madeOf(record: BriefRecord, theme: Theme, formats: Formats, equa
     text === null ? [] : [{ title: theme.say(`made.${key}`), html: equation(text) }];
   return {
     paragraph: [
-      theme.say('made.lead', { period: formats.period(outlook.periods[0].period, 'long') }),
+      theme.say(`made.lead.${model.fittedBy}`, { period: formats.period(outlook.periods[0].period, 'long') }),
       theme.say(`made.scale.${scale}`, { what: theme.say(`made.what.${differencing}`, { every }) }),
       ...thenSentences(then, model.constant ? (regular + seasonal > 0 ? 'drift' : 'level') : null, theme),
-      theme.say('made.last', { unit: series.unit }),
+      ...(differencing === '00' && scale === 'plain' ? [] : [theme.say('made.last', { unit: series.unit })]),
     ].join(' '),
     reason: model.reason === null ? null : theme.say('made.reason', { reason: model.reason }),
     notation: theme.say('made.notation', {
       form: formText(model.form),
+      kind: theme.say(`made.kind.${model.form.includes('x') ? 'seasonal' : 'plain'}`),
       scale: theme.say(`made.on.${scale}`),
       fitted: theme.say(`made.fitted.${model.fittedBy}`),
     }),
-    note: theme.say('made.symbols-note', { every, 'every-other': theme.say(`every.${series.every}.other`) }),
+    note: symbolsNote(record, theme, every),
     equations: [
       ...titled('backshift', tex.backshift),
       ...titled(record.figures.events.length > 0 ? 'variable' : 'power', tex.variableDefinition),
@@ -54,7 +55,21 @@ function thenSentences(then: string, constant: 'drift' | 'level' | null, theme: 
   return [theme.say(`made.then.${then}`), theme.say(`made.${constant}`)];
 }
 
-const formText = (form: string): string => form.replace(')x(', ') × (');
+/** What the letters of the equations stand for: only those that occur. */
+function symbolsNote({ series, equation, figures }: BriefRecord, theme: Theme, every: string): string {
+  const { regular, seasonal, season } = equation.differenced.definition;
+  const facts = { every, 'every-other': theme.say(`every.${series.every}.other`), season: String(season) };
+  const keys = [
+    'base',
+    ...(regular > 0 ? ['difference'] : []),
+    ...(seasonal > 0 ? ['seasonal'] : []),
+    ...(figures.events.length > 0 ? ['event'] : []),
+  ];
+  return keys.map((key) => theme.say(`made.symbols-note.${key}`, facts)).join(' ');
+}
+
+/** As HTML, the season's length set low. */
+const formText = (form: string): string => form.replace(')x(', ') × (').replace(/\)(\d+)$/, ')<sub>$1</sub>');
 
 type Worked = BriefRecord['equation']['workedSum'];
 
@@ -84,7 +99,12 @@ export function sumTable(record: BriefRecord, theme: Theme, formats: Formats) {
       product: formats.number(line.value, line.decimals),
       isResult: line.kind === 'expected',
     })),
-    rounded: first === sum.expected ? null : theme.say('sum.rounded', { shown: formats.number(first, printed.places) }),
+    rounded:
+      record.judgement !== null
+        ? theme.say('judged.worked', { shown: formats.number(first, printed.places) })
+        : first === sum.expected
+          ? null
+          : theme.say('sum.rounded', { shown: formats.number(first, printed.places) }),
   };
 }
 

@@ -1,6 +1,7 @@
 /** Page 1's sentences: which key of the wording fits the facts, and what it is filled with. */
 import type { BriefRecord } from '../record/record.js';
 import type { Formats } from './formats.js';
+import { frequency } from './frequency.js';
 import type { Theme } from './theme.js';
 
 /** "four quarters": in words where the wording has the number, else in figures. */
@@ -45,6 +46,7 @@ export function reasons({ series, facts, printed }: BriefRecord, theme: Theme, f
   const every = theme.say(`every.${series.every}.one`);
   const said: string[] = [];
   const { season, direction, surprise } = facts;
+  const { answer } = printed;
   if (season !== null && season.share !== null) {
     const key = season.strength !== 'strong' ? season.strength : season.everyYear ? 'always' : 'mostly';
     said.push(
@@ -59,7 +61,12 @@ export function reasons({ series, facts, printed }: BriefRecord, theme: Theme, f
   if (direction.kind !== 'unknown' && direction.perYear !== null) {
     const years = countedPeriods(direction.years, 'year', theme, formats);
     said.push(
-      theme.say(`why.direction.${direction.kind}`, { years, share: formats.share(Math.abs(direction.perYear)) }),
+      theme.say(`why.direction.${direction.kind}`, {
+        years,
+        share: formats.share(Math.abs(direction.perYear)),
+        low: direction.span === null ? '' : formats.number(roundedTo(direction.span[0], answer.step), answer.places),
+        high: direction.span === null ? '' : formats.number(roundedTo(direction.span[1], answer.step), answer.places),
+      }),
     );
   }
   if (surprise !== null) {
@@ -69,7 +76,7 @@ export function reasons({ series, facts, printed }: BriefRecord, theme: Theme, f
     said.push(
       theme.say(`why.surprise.${key}`, {
         period: formats.period(surprise.period, 'short'),
-        actual: formats.number(surprise.actual, series.places),
+        actual: formats.amount(surprise.actual, series.places),
         expected: formats.number(roundedTo(surprise.expected, printed.step), places),
         carry: formats.share(Math.round(surprise.carryNext * 20) / 20),
         every,
@@ -95,13 +102,21 @@ function peakName(peak: readonly number[], season: number, formats: Formats): st
 const MOST_CAVEATS = 2;
 
 /** The worst first; what the figures can't know comes last. */
-export function caveatSentences({ facts }: BriefRecord, theme: Theme, formats: Formats): string[] {
+export function caveatSentences(
+  { facts, judgement, purchase, printed, series }: BriefRecord,
+  theme: Theme,
+  formats: Formats,
+): string[] {
+  const order = purchase?.decided ?? purchase?.best;
   const said = facts.caveats.flatMap(({ id, count, share, what, from, to }): string[] => {
     const key = `caveats.${id}`;
     const facts = {
       count: count === null ? '' : formats.number(count, 0),
       share: share === null ? '' : formats.share(share),
       what: what ?? '',
+      alone: judgement === null ? '' : formats.number(judgement.printed.answer, printed.answer.places),
+      unit: series.unit,
+      short: order === undefined ? '' : frequency(order.chanceShort, theme, formats),
       span: from === null ? '' : formats.span(from, to ?? from),
     };
     if (theme.has(key)) return [theme.say(key, facts)];

@@ -7,8 +7,11 @@ import type { Theme } from './theme.js';
 /** A rule that missed by this much less, or more, did about as well: so few forecasts tell no finer. */
 const ABOUT_AS_WELL = 0.05;
 
+/** Fewer results than this say nothing of how wide a range should be. */
+const ENOUGH = 12;
+
 export function trustSentences(
-  { series, outlook, trackRecord }: BriefRecord,
+  { series, outlook, trackRecord, judgement }: BriefRecord,
   theme: Theme,
   formats: Formats,
 ): string[] {
@@ -17,7 +20,15 @@ export function trustSentences(
   const { origins, count, miss, inside80 } = trackRecord;
   const rule = betterRule(trackRecord);
   const ratio = rule.miss / miss;
-  const key = ratio > 1 + ABOUT_AS_WELL ? 'better' : ratio < 1 - ABOUT_AS_WELL ? 'worse' : 'as-well';
+  const [told, toldRule] = [missText(miss, theme, formats), missText(rule.miss, theme, formats)];
+  const key =
+    told === toldRule
+      ? 'as-well'
+      : ratio > 1 + ABOUT_AS_WELL
+        ? 'better'
+        : ratio < 1 - ABOUT_AS_WELL
+          ? 'worse'
+          : 'as-well';
   const inside = Math.round(inside80 * count);
   return [
     theme.say('trust.missed', {
@@ -28,13 +39,22 @@ export function trustSentences(
         theme,
         formats,
       ),
-      miss: missText(miss, theme, formats),
+      miss: told,
     }),
-    theme.say(`trust.${key}`, { rule: theme.say(`trust.rule.${rule.id}`), miss: missText(rule.miss, theme, formats) }),
+    theme.say(`trust.${key}`, { rule: theme.say(`trust.rule.${rule.id}`), miss: toldRule }),
     theme.say(inside === count ? 'trust.all-inside' : 'trust.inside', {
       inside: formats.number(inside, 0),
       count: formats.number(count, 0),
+      due: formats.number(Math.round(0.8 * count), 0),
     }),
+    ...(count < ENOUGH
+      ? []
+      : inside80 < 0.7
+        ? [theme.say('trust.narrow')]
+        : inside80 > 0.95
+          ? [theme.say('trust.wide')]
+          : []),
+    ...(judgement === null ? [] : [theme.say('trust.judged')]),
   ];
 }
 
@@ -64,7 +84,7 @@ export function assumptionRows({ assumptions, series }: BriefRecord, theme: Them
         every,
         'every-other': others,
         statistic: statistic === null ? '' : formats.number(statistic, 2),
-        chance: pValue === null ? '' : pValue < 0.005 ? theme.say('assume.tiny') : formats.number(pValue, 2),
+        chance: pValue === null ? '' : pValue < 0.005 ? theme.say('assume.tiny') : formats.number(100 * pValue, 0),
         years: formats.number(details.years ?? 0, 0),
         ratio: formats.number(details.ratio ?? 0, 2),
         list: periods.map((outlier) => periodText(outlier, theme, formats, series)).join('; '),
@@ -74,7 +94,7 @@ export function assumptionRows({ assumptions, series }: BriefRecord, theme: Them
       return {
         says: theme.say(`assume.${id}.says`, facts),
         status: theme.say(`assume.state.${status}`),
-        isWarning: status === 'fails',
+        isWarning: status === 'fails' || status === 'doubtful',
         figure: theme.say(figure === 'untested' ? 'assume.too-short' : `assume.${id}.${figure}`, facts),
         follows: theme.say(
           status === 'holds' || status === 'untested' ? 'assume.nothing' : `assume.${id}.follows`,

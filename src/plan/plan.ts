@@ -105,20 +105,38 @@ export interface Judgement {
 }
 
 export interface Purchase {
+  /** Periods that the order must last, from its arrival, and periods until it arrives. */
   readonly covers: number;
-  readonly unitCost: number;
-  readonly unitPrice: number;
-  readonly leftoverValue: number;
+  readonly arrives: number;
+  /** Money a unit; null where left out. */
+  readonly unitCost: number | null;
+  /** What decides: money a unit, or a share between 0 and 1. */
+  readonly aim:
+    | {
+        readonly kind: 'costs';
+        readonly unitPrice: number;
+        readonly leftoverValue: number;
+        readonly goodwill: number;
+      }
+    | { readonly kind: 'not-short'; readonly chance: number };
   readonly inStock: number;
   readonly onOrder: number;
+  readonly onOrderArrives: number;
   readonly pack: number;
+  readonly atLeast: number | null;
+  readonly atMost: number | null;
+  readonly spendAtMost: number | null;
+  /** Units that the planner decided on instead, and why. */
+  readonly decided: { readonly units: number; readonly because: string } | null;
   readonly at: Place;
 }
 
 export interface Budget {
   readonly kind: 'income' | 'spending';
-  /** Money for a unit. */
-  readonly perUnit: number;
+  /** Money for a unit, each amount from a period on; the first may hold from the start. */
+  readonly perUnit: readonly { readonly from: string | null; readonly amount: number }[];
+  /** Periods from the sale or use until the money moves. */
+  readonly paidAfter: number;
   readonly at: Place;
 }
 
@@ -242,14 +260,38 @@ const seriesOf = (series: SeriesText, slug: string, path: Path, document: Locate
 
 const purchaseOf = (purchase: NonNullable<SeriesText['purchase']>, at: Place): Purchase => ({
   covers: purchase.covers,
-  unitCost: purchase['unit-cost'],
-  unitPrice: purchase['unit-price'],
-  leftoverValue: purchase['leftover-value'],
+  arrives: purchase.arrives,
+  unitCost: purchase['unit-cost'] ?? null,
+  aim:
+    purchase['not-short'] !== undefined
+      ? { kind: 'not-short', chance: purchase['not-short'] }
+      : {
+          // The rules have seen to it that these are given.
+          kind: 'costs',
+          unitPrice: purchase['unit-price'] ?? 0,
+          leftoverValue: purchase['leftover-value'] ?? 0,
+          goodwill: purchase.goodwill ?? 0,
+        },
   inStock: purchase['in-stock'],
   onOrder: purchase['on-order'],
+  onOrderArrives: purchase['on-order-arrives'],
   pack: purchase.pack,
+  atLeast: purchase['at-least'] ?? null,
+  atMost: purchase['at-most'] ?? null,
+  spendAtMost: purchase['spend-at-most'] ?? null,
+  decided:
+    purchase.decided === undefined
+      ? null
+      : {
+          units: purchase.decided.value * (purchase.decided.kind === 'packs' ? purchase.pack : 1),
+          because: purchase.because ?? '',
+        },
   at,
 });
 
-const budgetOf = ({ price, cost }: NonNullable<SeriesText['budget']>, at: Place): Budget =>
-  price !== undefined ? { kind: 'income', perUnit: price, at } : { kind: 'spending', perUnit: cost ?? 0, at };
+const budgetOf = (budget: NonNullable<SeriesText['budget']>, at: Place): Budget => ({
+  kind: budget.price !== undefined ? 'income' : 'spending',
+  perUnit: [...(budget.price ?? budget.cost ?? [])].sort((a, b) => ((a.from ?? '') < (b.from ?? '') ? -1 : 1)),
+  paidAfter: budget['paid-after'],
+  at,
+});

@@ -2,11 +2,12 @@
  * The rules between a plan's keys. They read the plan as typed, so that they hold whatever else is wrong with it;
  * where a value that a rule needs is itself at fault, the schema has said so and the rule keeps quiet.
  */
-import type { z } from 'zod';
 import { type Every, examplePeriod, isPeriod, kindsOf, seasonOf } from '../calendar/calendar.js';
 import { shown } from '../figures/input-error.js';
 import type { Path } from './document.js';
 import { type Remark, sentence, valueAt } from './faults.js';
+import { remarksOnOrder } from './order-rules.js';
+import { good } from './read.js';
 import { planSchema } from './schema.js';
 
 /** What a plan asks of a model, for whoever knows models to check. Null where the plan leaves it out. */
@@ -36,7 +37,7 @@ export const remarksOnRules = (plan: unknown, checkModel: CheckModel): readonly 
       ...spansRunForward(plan, path, every),
       ...soldOutOnce(plan, path),
       ...priorsShrunk(plan, path),
-      ...order(plan, path),
+      ...remarksOnOrder(plan, path),
       ...budgetSide(plan, path),
       ...model(plan, path, every, checkModel),
     ]),
@@ -59,12 +60,6 @@ export const seriesPaths = (plan: unknown): readonly Path[] => itemPaths(plan, [
 const itemPaths = (plan: unknown, path: Path): readonly Path[] => {
   const list = valueAt(plan, path);
   return Array.isArray(list) ? list.map((_, i) => [...path, i]) : [];
-};
-
-/** A value as the schema reads it, or undefined where it is left out or at fault. */
-const good = <Schema extends z.ZodType>(schema: Schema, value: unknown): z.output<Schema> | undefined => {
-  const read = schema.safeParse(value);
-  return read.success ? read.data : undefined;
 };
 
 const text = (plan: unknown, path: Path): string | undefined => {
@@ -116,14 +111,18 @@ const eachOnce = (plan: unknown, key: 'name' | 'column'): readonly Remark[] => {
 const money = (plan: unknown): readonly Remark[] => {
   if (valueAt(plan, ['currency']) !== undefined) return [];
   const asking = seriesPaths(plan)
-    .flatMap((path) => [
-      [...path, 'purchase'],
-      [...path, 'budget'],
-    ])
-    .find((path) => valueAt(plan, path) !== undefined);
+    .flatMap((path) =>
+      [
+        // An order that aims at a chance needs no money.
+        ['purchase', 'unit-cost'],
+        ['purchase', 'unit-price'],
+        ['budget'],
+      ].map((keys) => ({ on: [...path, keys[0]], of: [...path, ...keys] })),
+    )
+    .find(({ of }) => valueAt(plan, of) !== undefined);
   if (!asking) return [];
-  const message = `currency is missing; a ${asking[asking.length - 1]} needs one, such as "currency: GBP" at the top`;
-  return [{ path: asking, on: 'key', message }];
+  const message = `currency is missing; a ${asking.on[asking.on.length - 1]} needs one, such as "currency: GBP" at the top`;
+  return [{ path: asking.on, on: 'key', message }];
 };
 
 const periodsFit = (plan: unknown, series: Path, every: Every | null): readonly Remark[] =>
@@ -167,36 +166,6 @@ const priorsShrunk = (plan: unknown, series: Path): readonly Remark[] => {
   if (valueAt(plan, path) === undefined || text(plan, [...series, 'fitted-by']) === 'shrunk') return [];
   const message = 'priors stand without "fitted-by: shrunk", which alone uses them; add it, or leave priors out';
   return [{ path, on: 'key', message }];
-};
-
-/**
- * The bounds of an order for a single season: with a leftover value not below the cost the best order has no bound,
- * with a price not above the cost the best order is none (Arrow, Harris & Marschak 1951).
- */
-const order = (plan: unknown, series: Path): readonly Remark[] => {
-  const shape = planSchema.shape.series.element.shape.purchase.unwrap().shape;
-  const path = (key: string): Path => [...series, 'purchase', key];
-  const cost = good(shape['unit-cost'], valueAt(plan, path('unit-cost')));
-  const price = good(shape['unit-price'], valueAt(plan, path('unit-price')));
-  const leftover = good(shape['leftover-value'], valueAt(plan, path('leftover-value')));
-  const covers = good(shape.covers, valueAt(plan, path('covers')));
-  const ahead = good(planSchema.shape.ahead, valueAt(plan, ['ahead']));
-  const remark = (key: string, rest: string): Remark => ({
-    path: path(key),
-    on: 'value',
-    message: sentence(plan, path(key), rest),
-  });
-  return [
-    ...(cost !== undefined && price !== undefined && price <= cost
-      ? [remark('unit-price', `is not above the unit cost of ${cost}, so the best order would be none`)]
-      : []),
-    ...(cost !== undefined && leftover !== undefined && leftover >= cost
-      ? [remark('leftover-value', `is not below the unit cost of ${cost}, so the best order would have no bound`)]
-      : []),
-    ...(covers !== undefined && ahead !== undefined && covers > ahead
-      ? [remark('covers', `is more than the ${ahead} periods that the plan looks ahead`)]
-      : []),
-  ];
 };
 
 const budgetSide = (plan: unknown, series: Path): readonly Remark[] => {

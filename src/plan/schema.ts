@@ -154,23 +154,64 @@ const judgement = z.strictObject(
   { error: mapping },
 );
 
+/** A chance in per cent (`90%`) or as a natural frequency (`9 in 10`), as a share between 0 and 1. */
+const chance = z
+  .string({ error: 'should be a chance' })
+  .regex(/^(\d+(\.\d+)?%|\d+ in \d+)$/, { error: 'should be a chance such as 90% or 9 in 10' })
+  .transform((text) => {
+    const [first, second] = text.split(' in ').map(Number.parseFloat);
+    return text.endsWith('%') ? first / 100 : first / second;
+  })
+  .refine((share) => share > 0 && share < 1, { error: 'should lie between 0% and 100%' });
+
+/** So many packs (`12 packs`), or so many units. */
+const decided = z
+  .string({ error: 'should be an order' })
+  .regex(/^\d+(\.\d+)?( packs?)?$/, { error: 'should be a number of packs or units, such as 12 packs or 288' })
+  .transform((text) => ({
+    kind: text.includes('pack') ? ('packs' as const) : ('units' as const),
+    value: Number.parseFloat(text),
+  }));
+
 const purchase = z.strictObject(
   {
-    covers: wholeFrom(1, 156).describe('how many periods the order must last'),
-    'unit-cost': aboveZero.describe('what a unit costs you'),
-    'unit-price': atLeastZero.describe('what a unit sells for'),
-    'leftover-value': number.describe('what a unit left over is still worth'),
+    covers: wholeFrom(1, 156).describe('how many periods the order must last, from its arrival'),
+    arrives: wholeFrom(0, 155).default(0).describe('periods ahead until it arrives; 0 is at once'),
+    'unit-cost': aboveZero.optional().describe('what a unit costs you'),
+    'unit-price': atLeastZero.optional().describe('what a unit sells for'),
+    'leftover-value': number.optional().describe('what a unit left over is still worth'),
+    goodwill: atLeastZero.optional().describe('what a lost sale costs beside its price'),
+    'not-short': chance.optional().describe('the chance of not running short to aim at, in place of the costs'),
     'in-stock': atLeastZero.describe('units in stock now'),
     'on-order': atLeastZero.default(0).describe('units ordered and still to come'),
+    'on-order-arrives': wholeFrom(0, 155).default(0).describe('periods ahead until these arrive; 0 is at once'),
     pack: aboveZero.default(1).describe('units in a pack; the order is in whole packs'),
+    'at-least': atLeastZero.optional().describe('the least to order, in units'),
+    'at-most': atLeastZero.optional().describe('the most to order, in units'),
+    'spend-at-most': atLeastZero.optional().describe('the most to spend on the order'),
+    decided: decided.optional().describe('what you decided to order instead, in packs or units'),
+    because: prose.optional().describe('why you decided so'),
   },
   { error: mapping },
 );
 
+/** One amount of money a unit, or several, each from a period on. */
+const perUnit = z.union(
+  [
+    atLeastZero.transform((amount) => [{ from: null, amount }]),
+    z
+      .record(period, atLeastZero)
+      .refine((amounts) => Object.keys(amounts).length > 0, { error: 'holds no amount' })
+      .transform((amounts) => Object.entries(amounts).map(([from, amount]) => ({ from, amount }))),
+  ],
+  { error: 'should be an amount such as 18.50, or amounts by the period that they hold from, such as 2026-Q4: 18.50' },
+);
+
 const budget = z.strictObject(
   {
-    price: atLeastZero.optional().describe('income for a unit'),
-    cost: atLeastZero.optional().describe('spending for a unit'),
+    price: perUnit.optional().describe('income for a unit'),
+    cost: perUnit.optional().describe('spending for a unit'),
+    'paid-after': wholeFrom(0, 24).default(0).describe('periods from the sale or use until the money moves'),
   },
   { error: mapping },
 );

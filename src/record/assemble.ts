@@ -18,8 +18,9 @@ import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
 import { parseScale } from '../sarima/scale.js';
 import { autocorrelations } from '../stats/autocorrelation.js';
 import { seedOf } from '../stats/generator.js';
+import { budgetPart, judgementPart, type Money, moneyOf, purchasePart, withJudgement } from './assemble-decisions.js';
 import { caveatsWith } from './caveats.js';
-import { type BriefInputs, periodAt } from './inputs.js';
+import { type BriefInputs, inputsOfRecord, periodAt } from './inputs.js';
 import { type BriefRecord, recordSchema } from './record.js';
 
 /** Where the record comes from: the program's version, and the folder that its brief is filed in (a date, or `trial`). */
@@ -33,12 +34,27 @@ export interface Origin {
  * them, a figure that the scale can't hold …).
  */
 export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
+  return assembleWithMoney(inputs, origin).record;
+}
+
+/** The money of a record that has a budget, computed again from the record itself. */
+export function moneyOfRecord(record: BriefRecord): Money {
+  const inputs = inputsOfRecord(record);
+  if (inputs.budget === null) throw new Error(`${record.brief} has no budget`);
+  return moneyOf(withJudgement(outlookOf(fitOf(inputs), inputs), inputs), inputs, inputs.budget);
+}
+
+/** The record, and where it has a budget its money on every path, which the record leaves out. */
+export function assembleWithMoney(inputs: BriefInputs, origin: Origin): { record: BriefRecord; money: Money | null } {
   const fit = fitOf(inputs);
-  const outlook = outlookOf(fit, inputs);
-  const explained = explain(fit, outlook, contextOf(inputs));
+  const alone = outlookOf(fit, inputs);
+  const outlook = withJudgement(alone, inputs);
+  const explained = explain(fit, { alone, outlook }, contextOf(inputs));
   const assumptions = assumptionsOf(fit, inputs);
   const trackRecord = trackRecordOf(fit, inputs);
-  return recordSchema.parse({
+  const judgement = judgementPart(expectations(alone, inputs), explained.printed, inputs);
+  const purchase = purchasePart(outlook, inputs);
+  const record = recordSchema.parse({
     format: 'seasonbrief-record/1',
     brief: `${origin.folder}/${inputs.series.slug}`,
     issued: inputs.issued,
@@ -51,14 +67,18 @@ export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
     equation: explained.equation,
     outlook: outlookPart(outlook, inputs),
     printed: explained.printed,
-    facts: { ...explained.facts, caveats: caveatsWith(explained.facts.caveats, assumptions, trackRecord) },
+    facts: {
+      ...explained.facts,
+      caveats: caveatsWith(explained.facts.caveats, assumptions, trackRecord, { judgement, purchase }),
+    },
     assumptions,
     trackRecord,
-    judgement: null,
-    purchase: null,
-    budget: null,
+    judgement,
+    purchase,
+    budget: budgetPart(outlook, inputs),
     lookBack: null,
   });
+  return { record, money: inputs.budget === null ? null : moneyOf(outlook, inputs, inputs.budget) };
 }
 
 function fitOptionsOf({ figures, model, series }: BriefInputs): FitOptions {
@@ -230,16 +250,22 @@ function fitPart(fit: Fit, inputs: BriefInputs): BriefRecord['fit'] {
 
 const missable = (value: number): number | null => (Number.isNaN(value) ? null : value);
 
-function outlookPart(outlook: Outlook, inputs: BriefInputs): BriefRecord['outlook'] {
+function expectations(outlook: Outlook, inputs: BriefInputs) {
   const n = inputs.figures.values.length;
   return {
-    seed: outlook.seed,
-    paths: outlook.paths,
     periods: outlook.periods.map((period, step) => ({ period: periodAt(inputs, n + step), ...period })),
     totals: outlook.totals.map(({ steps, ...total }) => ({
       ...total,
       periods: steps.map((step) => periodAt(inputs, n + step)),
     })),
+  };
+}
+
+function outlookPart(outlook: Outlook, inputs: BriefInputs): BriefRecord['outlook'] {
+  return {
+    seed: outlook.seed,
+    paths: outlook.paths,
+    ...expectations(outlook, inputs),
     heldAtZero: outlook.heldAtZero,
     calibration: {
       freedom: outlook.calibration.freedom,

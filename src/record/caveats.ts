@@ -7,6 +7,8 @@ type Caveat = BriefRecord['facts']['caveats'][number];
 const ORDER: readonly Caveat['id'][] = [
   'unsettled-fit',
   'short-history',
+  'short-order',
+  'judgement',
   'ranges-narrow',
   'changed-lately',
   'odd-period',
@@ -25,11 +27,15 @@ const ORDER: readonly Caveat['id'][] = [
 const ENOUGH_SCORED = 12;
 const TOO_FEW_INSIDE = 0.65;
 
+/** An order that runs short this often is warned of, whoever chose it. */
+const RISKY = 0.3;
+
 /** The caveats that a series has earned, worst first. */
 export function caveatsWith(
   known: readonly Caveat[],
   assumptions: BriefRecord['assumptions'],
   trackRecord: BriefRecord['trackRecord'],
+  { judgement, purchase }: Pick<BriefRecord, 'judgement' | 'purchase'>,
 ): Caveat[] {
   const none = { count: null, share: null, what: null, from: null, to: null };
   const fails = (id: string) => assumptions.find((assumption) => assumption.id === id && assumption.status === 'fails');
@@ -37,7 +43,10 @@ export function caveatsWith(
     Math.abs(each.forecastChange) > Math.abs(most.forecastChange) ? each : most,
   );
   const isNarrow = trackRecord !== null && trackRecord.count >= ENOUGH_SCORED && trackRecord.inside80 < TOO_FEW_INSIDE;
+  const order = purchase?.decided ?? purchase?.best;
   const added: Caveat[] = [
+    ...(order !== undefined && order.chanceShort >= RISKY ? [{ ...none, id: 'short-order' as const }] : []),
+    ...(judgement?.entries ?? []).slice(0, 1).map(({ what }) => ({ ...none, id: 'judgement' as const, what })),
     ...(isNarrow
       ? [{ ...none, id: 'ranges-narrow' as const, count: trackRecord.count, share: trackRecord.inside80 }]
       : []),

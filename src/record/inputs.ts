@@ -8,7 +8,7 @@ import { compareModels } from '../advice/advise.js';
 import type { AdviceOptions } from '../advice/choose.js';
 import { type Every, periodIndex, periodText, seasonOf } from '../calendar/calendar.js';
 import type { SeriesFigures } from '../figures/figures.js';
-import type { Plan, PlannedSeries } from '../plan/plan.js';
+import type { Budget, Plan, PlannedSeries, Purchase } from '../plan/plan.js';
 import { formText, parseForm } from '../sarima/form.js';
 import { defaultPriors, statedPriors } from '../sarima/priors.js';
 import { canonicalJson, sha256 } from './canonical.js';
@@ -18,6 +18,9 @@ import type { BriefRecord } from './record.js';
 export interface BriefInputs extends Readonly<Pick<BriefRecord, 'issued' | 'plan' | 'series' | 'figures' | 'model'>> {
   /** Periods to look ahead. */
   readonly ahead: number;
+  readonly judgement: NonNullable<BriefRecord['judgement']>['entries'];
+  readonly purchase: NonNullable<BriefRecord['purchase']>['asked'] | null;
+  readonly budget: NonNullable<BriefRecord['budget']>['asked'] | null;
 }
 
 /** The inputs of one series' brief. The plan must have been checked against the figures. */
@@ -58,8 +61,19 @@ export function briefInputs(
         ? advisedModel(series, values, { every, start, ahead: plan.ahead, regressors })
         : plannedModel(series),
     ahead: plan.ahead,
+    judgement: series.judgement.map(({ at, ...entry }) => entry),
+    purchase: series.purchase === null ? null : withoutPlace(series.purchase),
+    budget: series.budget === null ? null : budgetAsked(series.budget),
   };
 }
+
+const withoutPlace = ({ at, ...purchase }: Purchase): BriefInputs['purchase'] => purchase;
+
+const budgetAsked = ({ kind, perUnit, paidAfter }: Budget): BriefInputs['budget'] => ({
+  kind,
+  perUnit: perUnit.map(({ from, amount }) => ({ from, amount })),
+  paidAfter,
+});
 
 function plannedModel({ model, reason, priors, ...series }: PlannedSeries): BriefRecord['model'] {
   const form = parseForm(model);
@@ -146,14 +160,20 @@ const figuresSha256 = (every: Every, start: string, values: readonly (number | n
   sha256(canonicalJson({ every, start, values }));
 
 /** The inputs that a record was made from. */
-export const inputsOfRecord = ({ issued, plan, series, figures, model, outlook }: BriefRecord): BriefInputs => ({
-  issued,
-  plan,
-  series,
-  figures,
-  model,
-  ahead: outlook.periods.length,
-});
+export const inputsOfRecord = (record: BriefRecord): BriefInputs => {
+  const { issued, plan, series, figures, model, outlook, judgement, purchase, budget } = record;
+  return {
+    issued,
+    plan,
+    series,
+    figures,
+    model,
+    ahead: outlook.periods.length,
+    judgement: judgement?.entries ?? [],
+    purchase: purchase?.asked ?? null,
+    budget: budget?.asked ?? null,
+  };
+};
 
 /**
  * Whether two briefs say the same: the same date, figures, model and plan. The templates and the program's version are

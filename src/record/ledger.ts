@@ -62,7 +62,7 @@ function rowOf({ record, sha256: recordSha256, replaces }: LedgerEntry, previous
     expected: answer.expected,
     low_80: answer.range80[0],
     high_80: answer.range80[1],
-    order: null,
+    order: (record.purchase?.decided ?? record.purchase?.best)?.units ?? null,
     record_sha256: recordSha256,
     previous_sha256: previous,
     brief: record.brief,

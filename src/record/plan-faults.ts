@@ -2,7 +2,7 @@
 import { type Every, isPeriod, periodIndex, periodText, seasonOf } from '../calendar/calendar.js';
 import type { SeriesFigures } from '../figures/figures.js';
 import { type Fault, shown } from '../figures/input-error.js';
-import type { Plan, PlannedEvent, PlannedSeries } from '../plan/plan.js';
+import type { Judgement, Plan, PlannedEvent, PlannedSeries } from '../plan/plan.js';
 import { type Form, parseForm } from '../sarima/form.js';
 import { NO_PRIORS, penaltyOf, statedPriors } from '../sarima/priors.js';
 import { eventRegressor } from './events.js';
@@ -24,8 +24,14 @@ export function planFaults(plan: Plan, series: PlannedSeries, figures: SeriesFig
     modelFault(series, figures.every),
     priorsFault(series),
     ...series.soldOut.map((period) => soldOutFault(period, figures)),
+    ...(series.budget?.perUnit.map(({ from }) => amountFault(from, figures)) ?? []),
+    purchaseFault(plan, series),
   ];
-  return [...events, ...rest.flatMap((message) => (message === null ? [] : [say(series.at, message)]))];
+  const judgement = series.judgement.flatMap((entry) => {
+    const message = judgementFault(entry, plan, figures);
+    return message === null ? [] : [say(entry.at, message)];
+  });
+  return [...events, ...judgement, ...rest.flatMap((message) => (message === null ? [] : [say(series.at, message)]))];
 }
 
 function eventFault(event: PlannedEvent, { every, start, values }: SeriesFigures): string | null {
@@ -45,6 +51,32 @@ function eventFault(event: PlannedEvent, { every, start, values }: SeriesFigures
     return `${what} has no figure in its periods, so its effect can't be measured; leave it out, the missing figures stay missing`;
   }
   return null;
+}
+
+function judgementFault(
+  { what, from, to }: Judgement,
+  { ahead }: Plan,
+  { every, start, values }: SeriesFigures,
+): string | null {
+  const named = [from, to].find((period) => period !== null && !isPeriod(period, every));
+  const which = `judgement ${shown(what)}`;
+  if (named !== undefined) return `${which}: ${shown(named ?? '')} is not a period of figures that come every ${every}`;
+  const first = periodIndex(start, every) + values.length;
+  const inside = (period: string) => periodIndex(period, every) >= first && periodIndex(period, every) < first + ahead;
+  if (inside(from) && (to === null || inside(to))) return null;
+  const [next, last] = [first, first + ahead - 1].map((index) => periodText(index, every));
+  return `${which} lies outside the outlook, which runs from ${next} to ${last}; change its periods, or name what has happened as an event`;
+}
+
+function amountFault(from: string | null, { every }: SeriesFigures): string | null {
+  if (from === null || isPeriod(from, every)) return null;
+  return `budget: ${shown(from)} is not a period of figures that come every ${every}`;
+}
+
+/** Where the plan leaves `ahead` to be found, its own rules can't see how far an order may reach. */
+function purchaseFault({ ahead }: Plan, { purchase }: PlannedSeries): string | null {
+  if (purchase === null || purchase.arrives + purchase.covers <= ahead) return null;
+  return `purchase covers ${purchase.covers} periods from an arrival ${purchase.arrives} ahead, and the plan looks ${ahead} periods ahead; look further ahead or cover fewer`;
 }
 
 function aheadFault({ ahead }: Plan, { every }: SeriesFigures): string | null {

@@ -7,6 +7,7 @@
  * (weeks and four-week periods, by their first day). A missing figure is `null`.
  */
 import { z } from 'zod';
+import { budget, judgementEntry, purchase } from './decided.js';
 
 const number = z.number();
 const missable = z.number().nullable();
@@ -251,6 +252,8 @@ const printed = z.strictObject({
   }),
 });
 
+const printedJudged = z.strictObject({ alone: number, added: number });
+
 const trackRecord = z.strictObject({
   origins: count,
   /** Forecasts that could be scored. */
@@ -285,10 +288,12 @@ const priors = z.strictObject({
 /** Facts that sentences are chosen by; computed here so that templates choose words and nothing else. */
 const facts = z.strictObject({
   direction: z.strictObject({
-    kind: z.enum(['rising', 'falling', 'level', 'unknown']),
+    kind: z.enum(['rising', 'falling', 'level', 'uneven', 'unknown']),
     /** Average change per year over the last years, as a share of the level (0.05 is 5%); null if unknown. */
     perYear: missable,
     years: count,
+    /** The lowest and the highest of the yearly totals; null if unknown. */
+    span: range.nullable(),
   }),
   /** Null without a season. */
   season: z
@@ -328,6 +333,8 @@ const facts = z.strictObject({
       id: z.enum([
         'unsettled-fit',
         'short-history',
+        'judgement',
+        'short-order',
         'missing-figures',
         'wide-range',
         'leftover-pattern',
@@ -461,9 +468,17 @@ export const recordSchema = z.strictObject({
   ),
   /** How forecasts made the same way turned out; null with too little history. */
   trackRecord: trackRecord.nullable(),
-  judgement: z.null(),
-  purchase: z.null(),
-  budget: z.null(),
+  /** What the planner changed in the outlook; `alone` is what the figures alone say. */
+  judgement: z
+    .strictObject({
+      entries: z.array(judgementEntry).min(1),
+      alone: z.strictObject({ periods: z.array(outlookPeriod), totals: z.array(outlookTotal) }),
+      /** As page 1's rows print it: what the figures alone say, and what was added. Both columns add up. */
+      printed: z.strictObject({ periods: z.array(printedJudged), total: printedJudged, answer: number }),
+    })
+    .nullable(),
+  purchase: purchase.nullable(),
+  budget: budget.nullable(),
   lookBack: z.null(),
 });
 

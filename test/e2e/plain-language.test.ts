@@ -21,7 +21,7 @@ afterAll(() => rm(out, { recursive: true, force: true }));
 /** The prose of page 1: the answer, the list items, the paragraphs; not its tables and charts. */
 function proseOf(html: string): string[] {
   const [, first] = html.split('<article');
-  return [...first.matchAll(/<(li|p)(?: class="answer")?>(.*?)<\/\1>/gs)]
+  return [...first.matchAll(/<(li|p)(?: class="(?:answer|do|judged)")?>(.*?)<\/\1>/gs)]
     .map(([, , text]) => text.replace(/<[^>]+>/g, '').trim())
     .filter((text) => text.includes(' '));
 }
@@ -30,7 +30,7 @@ test.each(['antifouling-paint', 'visitor-nights', 'mooring-rope', 'workshop-labo
   'page 1 of %s reads easily: at least 60, which is plain English',
   async (slug) => {
     const prose = proseOf(await readFile(join(out, '2026-10-05', `${slug}.html`), 'utf8'));
-    const sentences = prose.flatMap((text) => text.split(/(?<=[.!?”])\s+(?=[A-Z“])/));
+    const sentences = prose.flatMap((text) => text.split(/(?<=[.!?”])\s+(?=[A-Z“\d])/));
     const words = prose.join(' ').match(/[\p{L}\d][\p{L}\d’',.%–-]*/gu) ?? [];
     // A number read aloud has about three syllables.
     const syllables = words.reduce((sum, word) => sum + (/\p{L}/u.test(word) ? syllable(word) : 3), 0);

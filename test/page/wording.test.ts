@@ -1,6 +1,9 @@
 /** Page 1's sentences over a grid of facts: no slip of grammar, no number that is none. */
 import { beforeAll, describe, expect, test } from 'vitest';
+import { budgetSentence } from '../../src/page/budget.js';
 import { formatsOf } from '../../src/page/formats.js';
+import { judgedSentences } from '../../src/page/judgement.js';
+import { orderReason, orderSentence } from '../../src/page/order.js';
 import { answerSentence, caveatSentences, reasons } from '../../src/page/sentences.js';
 import { loadTheme, type Theme } from '../../src/page/theme.js';
 import { assumptionRows, trustSentences } from '../../src/page/trust.js';
@@ -35,6 +38,105 @@ function expectClean(sentences: readonly string[]): void {
 }
 
 type Facts = BriefRecord['facts'];
+
+/** A judgement of changes such as `+6%` or `-40` on the sample's one period. */
+function judgementOf(changes: readonly (readonly [string, string | null])[], from: string): BriefRecord['judgement'] {
+  return {
+    entries: changes.map(([change, to]) => ({
+      what: 'New slipway opens',
+      from,
+      to,
+      change: {
+        kind: change.endsWith('%') ? ('percent' as const) : ('amount' as const),
+        value: Number.parseFloat(change),
+      },
+      because: 'Two charter firms have signed',
+    })),
+    alone: { periods: [], totals: [] },
+    printed: { periods: [{ alone: 200, added: 40 }], total: { alone: 200, added: 40 }, answer: 200 },
+  };
+}
+
+interface OrderChanges {
+  readonly unitCost?: number | null;
+  readonly packs?: number;
+  readonly pack?: number;
+  readonly arrives?: number;
+  readonly chanceShort?: number;
+  readonly isDecided?: boolean;
+}
+
+/** An order as a record holds it; without a unit cost it aims at a chance. */
+function purchaseOf(
+  period: string,
+  { unitCost = 11.2, packs = 17, pack = 24, arrives = 0, chanceShort = 0.18, isDecided = false }: OrderChanges,
+): BriefRecord['purchase'] {
+  const outcome = (each: number) => ({
+    packs: each,
+    units: each * pack,
+    cost: unitCost === null ? null : each * pack * unitCost,
+    sales: 200,
+    leftOver: 0,
+    lost: 40,
+    result: unitCost === null ? null : 1234.5 * each,
+    chanceShort,
+    chanceLeft: 1 - chanceShort,
+  });
+  const costs = unitCost === null ? null : { short: unitCost * 0.6, left: unitCost * 0.2 };
+  return {
+    asked: {
+      covers: 1,
+      arrives,
+      unitCost,
+      aim:
+        unitCost === null
+          ? { kind: 'not-short', chance: 0.9 }
+          : { kind: 'costs', unitPrice: unitCost * 1.6, leftoverValue: unitCost * 0.8, goodwill: 0 },
+      inStock: 0,
+      onOrder: 0,
+      onOrderArrives: 0,
+      pack,
+      atLeast: null,
+      atMost: null,
+      spendAtMost: null,
+      decided: isDecided ? { units: (packs + 3) * pack, because: 'They had no more' } : null,
+    },
+    span: [period, period],
+    shortCost: costs?.short ?? null,
+    leftOverCost: costs?.left ?? null,
+    ratio: costs === null ? null : 0.75,
+    demand: { expected: 240, middle: 238, range80: [200, 280], target: 260 },
+    beforeArrival: arrives === 0 ? null : { demand: 12, lost: 0, chanceShort: 0 },
+    stockAtArrival: 0,
+    best: outcome(packs),
+    unbound: outcome(packs),
+    heldBy: null,
+    decided: isDecided ? outcome(packs + 3) : null,
+    nearby: [outcome(packs), outcome(packs + 1)],
+    curve: [
+      { units: 0, result: null, chanceShort: 1 },
+      { units: 500, result: null, chanceShort: 0 },
+    ],
+    printed: { units: 0, result: 0 },
+  };
+}
+
+function budgetOf(
+  kind: 'income' | 'spending',
+  amount: number,
+  count: number,
+  period: string,
+  places: number,
+): BriefRecord['budget'] {
+  const range = { low: 0.8 * amount, expected: amount, high: 1.3 * amount };
+  const line = { ...range, chanceAboveLow: 0.9, chanceAboveExpected: 0.48, chanceAboveHigh: 0.1 };
+  return {
+    asked: { kind, perUnit: [{ from: null, amount: 2 }], paidAfter: 1 },
+    periods: Array.from({ length: count }, () => ({ period, perUnit: 2, ...line })),
+    totals: [{ kind: 'ahead', year: null, known: 0, periods: [period], ...line }],
+    printed: { places, periods: Array.from({ length: count }, () => range), totals: [range] },
+  };
+}
 
 describe.each(['en-GB', 'de-DE'])('%s', (locale) => {
   const theme = () => themes.get(locale) as Theme;
@@ -94,8 +196,13 @@ describe.each(['en-GB', 'de-DE'])('%s', (locale) => {
             })),
           )),
     ];
-    const directions = (['rising', 'falling', 'level', 'unknown'] as const).flatMap((kind) =>
-      [1, 5].map((years) => ({ kind, perYear: kind === 'falling' ? -0.04 : 0.06, years })),
+    const directions = (['rising', 'falling', 'level', 'uneven', 'unknown'] as const).flatMap((kind) =>
+      [1, 5].map((years) => ({
+        kind,
+        perYear: kind === 'falling' ? -0.04 : 0.06,
+        years,
+        span: [900, 1100] as [number, number],
+      })),
     );
     const surprises: Facts['surprise'][] = [
       null,
@@ -127,9 +234,68 @@ describe.each(['en-GB', 'de-DE'])('%s', (locale) => {
     for (const id of ids)
       for (const count of [1, 3]) {
         const caveat = { id, count, share: 0.62, what: 'Slipway closed', from: period, to: period };
-        const record = make(every, ({ facts }) => ({ facts: { ...facts, caveats: [caveat] } }));
+        const record = make(every, ({ facts }) => ({
+          facts: { ...facts, caveats: [caveat] },
+          judgement: judgementOf([['+6%', null]], period),
+          purchase: purchaseOf(period, {}),
+        }));
         expectClean(caveatSentences(record, theme(), formats(record)));
       }
+  });
+
+  test.each(KINDS)(
+    'judgement, each %s: more and less, in per cent and in units, for a while and for good',
+    (...every) => {
+      const [, , period] = every;
+      for (const change of ['+6%', '-12.5%', '+1', '-40'])
+        for (const to of [null, period]) {
+          const record = make(every, () => ({ judgement: judgementOf([[change, to]], period) }));
+          const sentences = judgedSentences(record, theme(), formats(record));
+          expect(sentences).toHaveLength(2);
+          expectClean(sentences);
+          expect(sentences[1]).not.toMatch(/[-−+]\d/);
+        }
+    },
+  );
+
+  test.each(KINDS)(
+    'the order, each %s: none, one pack and many, at once and later, decided otherwise or not',
+    (...every) => {
+      const [, , period] = every;
+      for (const currency of ['GBP', 'JPY'])
+        for (const unitCost of [null, 0.03, 11.2, 30_000])
+          for (const packs of [0, 1, 17])
+            for (const pack of [1, 24, 0.5])
+              for (const arrives of [0, 1])
+                for (const chanceShort of [0, 0.1, 0.34, 1])
+                  for (const isDecided of [true, false]) {
+                    const changes = { unitCost, packs, pack, arrives, chanceShort, isDecided };
+                    const record = make(every, ({ plan }) => ({
+                      plan: { ...plan, currency },
+                      purchase: purchaseOf(period, changes),
+                    }));
+                    expectClean([
+                      orderSentence(record, theme(), formats(record)),
+                      orderReason(record, theme(), formats(record)),
+                    ]);
+                    if (currency === 'JPY')
+                      expect(orderSentence(record, theme(), formats(record))).not.toMatch(/[¥￥][\d,]*\.\d\d\b.*[¥￥]/);
+                  }
+    },
+  );
+
+  test.each(KINDS)('the budget, each %s: income and spending, tiny and huge, one period and many', (...every) => {
+    const [, , period] = every;
+    for (const currency of ['GBP', 'JPY', 'EUR'])
+      for (const kind of ['income', 'spending'] as const)
+        for (const amount of [0, 0.03, 1, 24_900, 31_000_000])
+          for (const count of [1, 4]) {
+            const record = make(every, ({ plan }) => ({
+              plan: { ...plan, currency },
+              budget: budgetOf(kind, amount, count, period, currency === 'JPY' ? 0 : 2),
+            }));
+            expectClean([budgetSentence(record, theme(), formats(record))]);
+          }
   });
 
   test.each(KINDS)('the trust, each %s: no record, a good one, one that a plain rule beats', (...every) => {

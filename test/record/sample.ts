@@ -113,7 +113,7 @@ export function sampleRecord(changes: SampleChanges = {}): BriefRecord {
       answer: { places: 0, step: 1, expected, range80: [200, 280], lastYear: 240, change: 0 },
     },
     facts: {
-      direction: { kind: 'unknown', perYear: null, years: 1 },
+      direction: { kind: 'unknown', perYear: null, years: 1, span: null },
       season: null,
       surprise: null,
       relativeRange: null,
