@@ -33,7 +33,10 @@ export async function orderChart(purchase: NonNullable<BriefRecord['purchase']>,
   const xTicks = niceTicks(curve[0].x, curve[curve.length - 1].x, 8).filter(
     (tick) => tick <= curve[curve.length - 1].x,
   );
-  const yTicks = niceTicks(Math.min(...curve.map(({ y }) => y)), Math.max(...curve.map(({ y }) => y)), 4);
+  const heights = curve.map(({ y }) => y);
+  const [low, high] = [Math.min(...heights), Math.max(...heights)];
+  // With room for the labels over the top.
+  const yTicks = niceTicks(low, purchase.ratio === null ? high : high + 0.12 * (high - low), 4);
   const x = {
     field: 'x',
     type: 'quantitative',
@@ -57,12 +60,12 @@ export async function orderChart(purchase: NonNullable<BriefRecord['purchase']>,
   } as const;
   const width = await openTextWidth();
   const [least, most] = x.scale.domain;
-  // Under the flat top, over the falling chance. Of two marks the left one's label stands on its left; a label also
-  // does where its right has no room for it.
-  const dy = purchase.ratio === null ? -11 : 13;
+  // Of two marks the left one's label stands on its left; a label also does where its right has no room for it. Labels
+  // stand over the curve, but left of a mark on the falling chance, where the curve is above it.
   const mark = (outcome: Point, text: string, { isChosen, isLeft }: { isChosen: boolean; isLeft: boolean }) => {
     const room = ((most - outcome.units) / (most - least)) * WIDTH;
     const toLeft = isLeft || room < width(text, { family: 'sans', size: LABEL, weight: 600 }) + 12;
+    const dy = purchase.ratio === null && toLeft ? 7 : -11;
     const data = { values: [{ x: outcome.units, y: heightOf(outcome), text }] };
     const color = isChosen ? ACCENT : INK;
     const fill = isChosen ? ACCENT : PAPER;

@@ -38,8 +38,12 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   const isLong = figures.rows.length > MANY;
   const room = roomOf(record, figures.rows.length);
   const past = pastTable(record, theme, formats);
+  const decision = await decisionOf(record, theme, formats);
+  const judgement = judgementView(record, theme, formats);
   const annex = {
     periods: periodsTable(record, theme, formats),
+    judgement: judgement?.annex ?? null,
+    budget: decision?.budget?.annex ?? null,
     past: past.height > MOST_PAST_ROWS ? past : null,
   };
   const view = {
@@ -67,12 +71,14 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     figures,
     isLong,
     isFull: room.isFull,
+    isCrowded: room.isCrowded,
+    isLongNamed: series.name.length > 45,
     reasons: reasons(record, theme, formats),
     trust: trustSentences(record, theme, formats).join(' '),
     track: room.hasTrack ? await trackOf(record, theme, formats, every) : null,
     caveats: caveatSentences(record, theme, formats),
-    decision: await decisionOf(record, theme, formats),
-    judgement: judgementView(record, theme, formats),
+    decision,
+    judgement,
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
     sum: sumTable(record, theme, formats),
     meanings: meaningRows(record, theme, formats),
@@ -83,7 +89,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     data: checksOf(record, theme, formats),
     past: annex.past === null ? past : null,
     annexTitle: theme.say('annex.periods', { every }),
-    annex: annex.periods === null && annex.past === null ? null : annex,
+    annex: Object.values(annex).every((part) => part === null) ? null : annex,
     file: fileLines(record, theme, formats, options),
     disclaimer: theme.say('disclaimer'),
   };
@@ -141,10 +147,11 @@ function roomOf({ plan, purchase, budget, judgement }: BriefRecord, rows: number
   const isLetter = plan.paper === 'Letter';
   const asked = [purchase, budget, judgement].filter((part) => part !== null).length;
   const isFull = asked > 0;
-  const height = 140 - 13 * Math.max(0, rows - 4) - 16 * asked - (isLetter ? 24 : 0);
+  const height = 140 - 13 * Math.max(0, rows - 4) - 18 * asked - (isLetter ? 24 : 0);
   return {
     isFull,
-    picture: Math.max(isLetter ? 76 : 92, height),
+    isCrowded: asked > 2,
+    picture: Math.max(isLetter ? 70 : asked < 3 ? 90 : 70, height),
     hasTrack: rows <= MANY && asked + (isLetter ? 2 : 0) < 3,
   };
 }

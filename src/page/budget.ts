@@ -7,6 +7,9 @@ import type { Theme } from './theme.js';
 
 type Budget = NonNullable<BriefRecord['budget']>;
 
+/** More periods than this go into the annex. */
+const MOST_ROWS = 13;
+
 export function budgetView(record: BriefRecord, theme: Theme, formats: Formats) {
   const { budget, series } = record;
   if (budget === null) return null;
@@ -19,19 +22,23 @@ export function budgetView(record: BriefRecord, theme: Theme, formats: Formats) 
     expected: money(figures.expected),
     high: money(figures.high),
   });
+  const heads = [
+    theme.say(`figures.period.${series.every}`),
+    theme.say(`budget.per-unit.${asked.kind}`),
+    ...['low', 'expected', 'high'].map((key) => theme.say(`budget.${key}.${asked.kind}`)),
+  ];
+  const rows = periods.map(({ period, perUnit }, i) =>
+    row(formats.period(period, 'short'), formats.price(perUnit), printed.periods[i]),
+  );
+  const sums = totals.map((total, i) => row(totalName(total, record, theme, formats), '', printed.totals[i]));
+  const isLong = rows.length > MOST_ROWS;
   const all = totals.findIndex(({ kind }) => kind === 'ahead');
   return {
     title: theme.say(`budget.title.${asked.kind}`),
     answer: budgetSentence(record, theme, formats),
-    heads: [
-      theme.say(`figures.period.${series.every}`),
-      theme.say(`budget.per-unit.${asked.kind}`),
-      ...['low', 'expected', 'high'].map((key) => theme.say(`budget.${key}.${asked.kind}`)),
-    ],
-    rows: periods.map(({ period, perUnit }, i) =>
-      row(formats.period(period, 'short'), formats.price(perUnit), printed.periods[i]),
-    ),
-    totals: totals.map((total, i) => row(totalName(total, record, theme, formats), '', printed.totals[i])),
+    table: { heads, rows: isLong ? [] : rows, totals: sums },
+    /** Every period's row, where page 2 has room for the totals alone; else null. */
+    annex: isLong ? { heads, rows, totals: sums } : null,
     note: [
       theme.say(`budget.chances.${asked.kind}`, chancesOf(totals[all] ?? periods[0], theme, formats)),
       theme.say(`budget.assumes.${asked.kind}`, { unit: series.unit }),

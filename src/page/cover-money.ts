@@ -40,6 +40,9 @@ export function ordersTable({ orders }: CoverRecord, theme: Theme, formats: Form
 
 type Kind = 'income' | 'spending' | 'net';
 
+/** Wider than this, each kind has a table of its own. */
+const MOST_CHARACTERS = 72;
+
 export function budgetTables({ budget, rows, plan }: CoverRecord, theme: Theme, formats: Formats) {
   if (budget === null) return null;
   const { printed, periods, totals, series, cash } = budget;
@@ -59,16 +62,22 @@ export function budgetTables({ budget, rows, plan }: CoverRecord, theme: Theme, 
     const { low, expected, high } = [...money.periods, ...money.totals][i];
     return [low, expected, high].map((amount) => formats.money(amount, money.places));
   };
-  return {
-    title: theme.say('cover.budget.title'),
-    groups: kinds.map((kind) => theme.say(`cover.budget.heads.${kind}`)),
-    heads: kinds.flatMap(() => ['low', 'expected', 'high'].map((key) => theme.say(`cover.budget.heads.${key}`))),
+  const table = (shown: readonly Kind[]) => ({
+    groups: shown.map((kind) => theme.say(`cover.budget.heads.${kind}`)),
+    heads: shown.flatMap(() => ['low', 'expected', 'high'].map((key) => theme.say(`cover.budget.heads.${key}`))),
     period: theme.say(`figures.period.${every}`),
-    rows: names.slice(0, periods.length).map((name, i) => ({ name, cells: kinds.flatMap((kind) => cells(kind, i)) })),
+    rows: names.slice(0, periods.length).map((name, i) => ({ name, cells: shown.flatMap((kind) => cells(kind, i)) })),
     totals: names.slice(periods.length).map((name, i) => ({
       name,
-      cells: kinds.flatMap((kind) => cells(kind, periods.length + i)),
+      cells: shown.flatMap((kind) => cells(kind, periods.length + i)),
     })),
+  });
+  const widest = Math.max(
+    ...names.flatMap((_, i) => kinds.flatMap((kind) => cells(kind, i).map((text) => text.length))),
+  );
+  return {
+    title: theme.say('cover.budget.title'),
+    tables: 3 * kinds.length * widest > MOST_CHARACTERS ? kinds.map((kind) => table([kind])) : [table(kinds)],
     notes: [
       theme.say(`cover.budget.note.${formats.plural(series.length) === 'one' ? 'one' : 'other'}`, {
         names: formats.list(series.flatMap((brief) => rows.find((row) => row.brief === brief)?.series.name ?? [])),

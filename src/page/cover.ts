@@ -36,6 +36,7 @@ export async function renderCover(cover: CoverRecord, theme: Theme, { trial }: {
       of: theme.say('of'),
     }),
     trial: trial ? theme.say('trial') : null,
+    paper: plan.paper.toLowerCase(),
     logo: theme.logo,
     preparedFor: plan.preparedFor,
     heading: plan.heading,

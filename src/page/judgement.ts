@@ -28,20 +28,29 @@ export function judgementView(record: BriefRecord, theme: Theme, formats: Format
   const heads = ['alone', 'change', 'shown'].map((key) => theme.say(`judged.heads.${key}`));
   // A few periods stand beside one another, and so take less of the page.
   const isWide = rows.length <= MOST_COLUMNS;
+  const isLong = rows.length > MOST_ROWS;
+  const corner = theme.say(`figures.period.${series.every}`);
   return {
     title: theme.say('judged.title'),
     text: [
       ...entrySentences(record, theme, formats),
       ...(plan.preparedBy === null ? [] : [theme.say('judged.by', { by: plan.preparedBy })]),
     ].join(' '),
-    corner: theme.say(`figures.period.${series.every}`),
+    corner,
     heads: isWide ? rows.map(({ name }) => name) : heads,
-    rows: isWide ? heads.map((name, i) => ({ name, cells: rows.map(({ cells }) => cells[i]) })) : rows,
+    rows: isWide
+      ? heads.map((name, i) => ({ name, cells: rows.map(({ cells }) => cells[i]) }))
+      : isLong
+        ? rows.slice(-1)
+        : rows,
+    /** Every period's row, where there is room for the total alone; else null. */
+    annex: isLong ? { title: theme.say('judged.title'), text: '', corner, heads, rows } : null,
   };
 }
 
-/** More periods than this stand below one another. */
+/** More periods than this stand below one another, and more than that go into the annex. */
 const MOST_COLUMNS = 6;
+const MOST_ROWS = 14;
 
 function entrySentences({ judgement, series }: BriefRecord, theme: Theme, formats: Formats): string[] {
   return (judgement?.entries ?? []).map(({ what, from, to, change, because }) => {

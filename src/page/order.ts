@@ -3,7 +3,7 @@ import { orderChart } from '../charts/order-chart.js';
 import type { BriefRecord } from '../record/record.js';
 import { plainText } from './document.js';
 import type { Formats } from './formats.js';
-import { frequency } from './frequency.js';
+import { frequency, frequencySentence } from './frequency.js';
 import type { Theme } from './theme.js';
 
 type Purchase = NonNullable<BriefRecord['purchase']>;
@@ -61,7 +61,7 @@ export function orderReason(record: BriefRecord, theme: Theme, formats: Formats)
     ...decidedSentences(record, purchase, theme, formats).slice(0, 1),
     theme.say('order.lasts', {
       span: formats.span(...purchase.span),
-      short: frequency(order.chanceShort, theme, formats),
+      short: frequencySentence('order.short', order.chanceShort, theme, formats),
     }),
     ...(purchase.decided === null ? whySentences(purchase, theme, formats) : []),
   ].join(' ');
@@ -112,7 +112,7 @@ function coverSentences(record: BriefRecord, purchase: Purchase, theme: Theme, f
           theme.say('order.before', {
             ...facts,
             demand: units(beforeArrival.demand),
-            short: frequency(beforeArrival.chanceShort, theme, formats),
+            short: frequencySentence('order.before-short', beforeArrival.chanceShort, theme, formats),
           }),
         ]),
   ];

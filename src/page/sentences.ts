@@ -1,7 +1,7 @@
 /** Page 1's sentences: which key of the wording fits the facts, and what it is filled with. */
 import type { BriefRecord } from '../record/record.js';
 import type { Formats } from './formats.js';
-import { frequency } from './frequency.js';
+import { frequencySentence } from './frequency.js';
 import type { Theme } from './theme.js';
 
 /** "four quarters": in words where the wording has the number, else in figures. */
@@ -116,7 +116,7 @@ export function caveatSentences(
       what: what ?? '',
       alone: judgement === null ? '' : formats.number(judgement.printed.answer, printed.answer.places),
       unit: series.unit,
-      short: order === undefined ? '' : frequency(order.chanceShort, theme, formats),
+      short: order === undefined ? '' : frequencySentence('order.short', order.chanceShort, theme, formats),
       span: from === null ? '' : formats.span(from, to ?? from),
     };
     if (theme.has(key)) return [theme.say(key, facts)];

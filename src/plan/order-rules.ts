@@ -129,7 +129,12 @@ const boundRemarks = (
   if (packs * pack > most)
     return [remark('at-least', `and at-most, ${most}, have no whole number of packs of ${pack} between them`)];
   if (cost !== undefined && packs * pack * cost > spend * (1 + 1e-12))
-    return [remark('spend-at-most', `does not pay for the least order, which costs ${packs * pack * cost}`)];
+    return [
+      remark(
+        'spend-at-most',
+        `does not pay for the least order, which costs ${Number((packs * pack * cost).toPrecision(12))}`,
+      ),
+    ];
   return [];
 };
 

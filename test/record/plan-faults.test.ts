@@ -29,7 +29,7 @@ test.each([
 ])('%s', (_, more, message) => {
   const found = faults({ more });
   expect(found).toHaveLength(1);
-  expect(found[0]).toMatchObject({ file: 'plan.yaml', line: 14, message: expect.stringMatching(message) });
+  expect(found[0]).toMatchObject({ file: 'plan.yaml', line: 15, message: expect.stringMatching(message) });
   expect(found[0]?.message).toMatch(/^series "Rope": event "Slipway closed"/);
 });
 

@@ -5,6 +5,7 @@ import { type Plan, type PlannedSeries, parsePlan } from '../../src/plan/plan.js
 const text = `heading: Stores outlook
 prepared-for: Saltmarsh Boatyard
 issued: 2026-10-05
+currency: GBP
 ahead: AHEAD
 figures:
   file: figures.csv
