@@ -4,23 +4,21 @@
  *   record -> charts, sentences, tables -> brief.hbs -> the type that the text needs
  */
 import { barChart } from '../charts/bar-chart.js';
-import { outlookChart, startsAtZero } from '../charts/outlook-chart.js';
 import { residualsChart } from '../charts/residuals-chart.js';
-import { trackChart } from '../charts/track-chart.js';
 import type { BriefRecord } from '../record/record.js';
-import { budgetSentence, budgetView } from './budget.js';
+import { budgetView } from './budget.js';
 import { checksOf, pastTable } from './checks.js';
 import { meaningRows } from './coefficients.js';
-import { pageStyle, plainText, withType } from './document.js';
+import { pageStyle, withType } from './document.js';
 import { equationHtml } from './equation.js';
-import { figuresTable, periodsTable } from './figures-table.js';
+import { periodsTable } from './figures-table.js';
+import { firstPage } from './first-page.js';
 import { type Formats, formatsOf } from './formats.js';
 import { madeOf, sumTable } from './how-made.js';
-import { judgedSentences, judgementView } from './judgement.js';
-import { orderReason, orderSentence, orderView } from './order.js';
-import { answerSentence, capital, caveatSentences, reasons } from './sentences.js';
+import { judgementView } from './judgement.js';
+import { orderView } from './order.js';
 import type { Theme } from './theme.js';
-import { assumptionRows, trustSentences } from './trust.js';
+import { assumptionRows } from './trust.js';
 
 export interface BriefOptions {
   /** SHA-256 of the record's file. */
@@ -34,9 +32,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   const { plan, series, outlook } = record;
   const span = formats.span(outlook.periods[0].period, outlook.periods[outlook.periods.length - 1].period);
   const every = theme.say(`every.${series.every}.one`);
-  const figures = figuresTable(record, theme, formats);
-  const isLong = figures.rows.length > MANY;
-  const room = roomOf(record, figures.rows.length);
+  const first = await firstPage(record, theme, formats);
   const past = pastTable(record, theme, formats);
   const decision = await decisionOf(record, theme, formats);
   const judgement = judgementView(record, theme, formats);
@@ -62,21 +58,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     heading: plan.heading,
     issued: formats.date(record.issued),
     brief: record.brief,
-    name: series.name,
-    scope: theme.say('in-unit', { span, unit: series.unit }),
-    answer: answerSentence(record, theme, formats),
-    judged: judgedSentences(record, theme, formats),
-    todo: todoOf(record, theme, formats),
-    picture: await pictureOf(record, theme, formats, every, room.picture),
-    figures,
-    isLong,
-    isFull: room.isFull,
-    isCrowded: room.isCrowded,
-    isLongNamed: series.name.length > 45,
-    reasons: reasons(record, theme, formats),
-    trust: trustSentences(record, theme, formats).join(' '),
-    track: room.hasTrack ? await trackOf(record, theme, formats, every) : null,
-    caveats: caveatSentences(record, theme, formats),
+    first,
     decision,
     judgement,
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
@@ -96,104 +78,21 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
   return withType(theme.brief(view));
 }
 
-/** Page 1's answer to what to do; null where neither an order nor a budget was asked for. */
-function todoOf(record: BriefRecord, theme: Theme, formats: Formats) {
-  const { purchase, budget } = record;
-  if (purchase === null && budget === null) return null;
-  return {
-    title: theme.say('todo.title'),
-    order:
-      purchase === null
-        ? null
-        : { answer: orderSentence(record, theme, formats), why: orderReason(record, theme, formats) },
-    budget: budget === null ? null : { answer: budgetSentence(record, theme, formats) },
-  };
-}
-
 async function decisionOf(record: BriefRecord, theme: Theme, formats: Formats) {
   const order = await orderView(record, theme, formats);
   const budget = budgetView(record, theme, formats);
   return order === null && budget === null ? null : { order, budget };
 }
 
-/** The picture beside the track record's sentences; null where there is none to draw. */
-async function trackOf(record: BriefRecord, theme: Theme, formats: Formats, every: string) {
-  const shown = record.trackRecord?.nextPeriod.slice(-12) ?? [];
-  const inside = shown.filter(({ actual, range80 }) => actual >= range80[0] && actual <= range80[1]).length;
-  const facts = { every, count: formats.number(shown.length, 0), inside: formats.number(inside, 0) };
-  const svg = await trackChart(record, {
-    described: plainText(theme.say('trust.picture.described', facts)),
-    share: (share) => formats.change(100 * share),
-    periodName: (period) => formats.period(period, 'short'),
-  });
-  return svg === null ? null : { title: theme.say('trust.picture.title', facts), svg };
-}
-
 /** A name that leaves room beside it in the running head. */
 const shortened = (name: string): string =>
   [...name].length > 45 ? `${[...name].slice(0, 44).join('').trimEnd()}…` : name;
-
-/** More rows than this are set closer, so that page 1 stays one page. */
-const MANY = 6;
 
 /** More rows of past figures than this stand in the annex, so that the checks stay one page. */
 const MOST_PAST_ROWS = 15;
 
 /** The plot of a chart beside the equations, in px of its own. */
 const NARROW = 172;
-
-/** How page 1 shares its height: what is asked for and many rows leave less to the pictures, and Letter less still. */
-function roomOf({ plan, purchase, budget, judgement }: BriefRecord, rows: number) {
-  const isLetter = plan.paper === 'Letter';
-  const asked = [purchase, budget, judgement].filter((part) => part !== null).length;
-  const isFull = asked > 0;
-  const height = 140 - 13 * Math.max(0, rows - 4) - 18 * asked - (isLetter ? 24 : 0);
-  return {
-    isFull,
-    isCrowded: asked > 2,
-    picture: Math.max(isLetter ? 70 : asked < 3 ? 90 : 70, height),
-    hasTrack: rows <= MANY && asked + (isLetter ? 2 : 0) < 3,
-  };
-}
-
-/** `height` is the plot's, in px. */
-async function pictureOf(record: BriefRecord, theme: Theme, formats: Formats, every: string, height: number) {
-  const { series, figures, outlook, printed } = record;
-  const last = outlook.periods[outlook.periods.length - 1].period;
-  const periods = outlook.periods.map(({ period }, h) => ({ period, value: printed.periods[h].expected }));
-  const lowest = periods.reduce((a, b) => (b.value < a.value ? b : a));
-  const highest = periods.reduce((a, b) => (b.value > a.value ? b : a));
-  const end = formats.period(last, 'long');
-  const described = theme.say('picture.described', {
-    series: series.name,
-    unit: series.unit,
-    every,
-    start: formats.period(figures.start, 'short'),
-    last: formats.period(record.facts.surprise?.period ?? figures.start, 'short'),
-    end,
-    lowest: formats.number(lowest.value, printed.places),
-    lowestPeriod: formats.period(lowest.period, 'short'),
-    highest: formats.number(highest.value, printed.places),
-    highestPeriod: formats.period(highest.period, 'short'),
-  });
-  return {
-    title: theme.say('picture.title', { unit: capital(series.unit), every, end }),
-    note: startsAtZero(record) ? null : theme.say('picture.not-from-zero'),
-    svg: await outlookChart(
-      record,
-      {
-        described: plainText(described),
-        eight: theme.say('picture.eight'),
-        nineteen: theme.say('picture.nineteen'),
-        lastYear: theme.say('picture.last-year'),
-        number: formats.number,
-        railName: (period) => formats.period(period, 'axis'),
-        yearName: (period) => period.slice(0, 4),
-      },
-      height,
-    ),
-  };
-}
 
 async function weightsOf({ series, equation }: BriefRecord, theme: Theme, formats: Formats) {
   const many = theme.say(`every.${series.every}.other`);

@@ -1,9 +1,9 @@
 /** Page 1's sentences over a grid of facts: no slip of grammar, no number that is none. */
 import { beforeAll, describe, expect, test } from 'vitest';
-import { budgetSentence } from '../../src/page/budget.js';
+import { budgetSentence, budgetView } from '../../src/page/budget.js';
 import { formatsOf } from '../../src/page/formats.js';
 import { judgedSentences } from '../../src/page/judgement.js';
-import { orderReason, orderSentence } from '../../src/page/order.js';
+import { orderReason, orderSentence, orderView } from '../../src/page/order.js';
 import { answerSentence, caveatSentences, reasons } from '../../src/page/sentences.js';
 import { loadTheme, type Theme } from '../../src/page/theme.js';
 import { assumptionRows, trustSentences } from '../../src/page/trust.js';
@@ -283,6 +283,38 @@ describe.each(['en-GB', 'de-DE'])('%s', (locale) => {
                   }
     },
   );
+
+  test.each(KINDS)('page 2, each %s: what the order and the budget are made of', async (...every) => {
+    const [, , period] = every;
+    const held = ['at-least', 'at-most', 'spend-at-most', null] as const;
+    for (const [i, unitCost] of [null, 0.03, 30_000].entries())
+      for (const arrives of [0, 1])
+        for (const isDecided of [true, false]) {
+          const purchase = purchaseOf(period, { unitCost, arrives, isDecided, packs: i });
+          if (purchase === null) continue;
+          const asked = {
+            ...purchase.asked,
+            onOrder: 10 * i,
+            onOrderArrives: arrives,
+            atLeast: 1,
+            atMost: 5,
+            spendAtMost: 9,
+          };
+          const record = make(every, () => ({
+            purchase: { ...purchase, asked, heldBy: held[i] },
+            budget: budgetOf(i === 0 ? 'income' : 'spending', 1234, 1 + 3 * i, period, 2),
+          }));
+          const order = await orderView(record, theme(), formats(record));
+          const budget = budgetView(record, theme(), formats(record));
+          expectClean([
+            ...(order?.reasons ?? []),
+            ...(order?.decided ?? []),
+            order?.nearby.note ?? '',
+            order?.caution ?? '',
+          ]);
+          expectClean([budget?.answer ?? '', budget?.note ?? '', budget?.caution ?? '']);
+        }
+  });
 
   test.each(KINDS)('the budget, each %s: income and spending, tiny and huge, one period and many', (...every) => {
     const [, , period] = every;
