@@ -37,42 +37,31 @@ export interface Formats {
 export function formatsOf(plan: BriefRecord['plan'], every: BriefRecord['series']['every']): Formats {
   const { locale, yearStarts, currency } = plan;
   const inCurrency: Intl.NumberFormatOptions = { style: 'currency', currency, currencyDisplay: 'narrowSymbol' };
-  const price = new Intl.NumberFormat(locale, { ...inCurrency });
-  const finer = new Intl.NumberFormat(locale, { ...inCurrency, maximumFractionDigits: FINEST });
+  const price = formatter(locale, inCurrency);
+  const finer = formatter(locale, { ...inCurrency, maximumFractionDigits: FINEST });
   const own = price.resolvedOptions().maximumFractionDigits ?? 2;
   const money = (amount: number, places: number) =>
-    minus(
-      new Intl.NumberFormat(locale, {
-        ...inCurrency,
-        minimumFractionDigits: places,
-        maximumFractionDigits: places,
-      }).format(amount === 0 ? 0 : amount),
-    );
-  const change = new Intl.NumberFormat(locale, {
-    style: 'percent',
-    signDisplay: 'exceptZero',
-    maximumFractionDigits: 0,
-  });
-  const share = new Intl.NumberFormat(locale, { style: 'percent', maximumFractionDigits: 0 });
+    minus(formatter(locale, { ...inCurrency, ...withPlaces(places) }).format(amount === 0 ? 0 : amount));
+  const number = (value: number, places: number) =>
+    minus(formatter(locale, { ...withPlaces(places), signDisplay: 'negative' }).format(value === 0 ? 0 : value));
+  const percent = (places: number) => formatter(locale, { style: 'percent', ...withPlaces(places) });
+  const change = formatter(locale, { style: 'percent', signDisplay: 'exceptZero', maximumFractionDigits: 0 });
   const plurals = new Intl.PluralRules(locale);
   const minus = (text: string) => text.replace('-', '\u2212');
   return {
-    number: (value, places) => minus(numberFormat(locale, places).format(value === 0 ? 0 : value)),
-    rounded: (value, places) => minus(numberFormat(locale, Math.max(places, 0)).format(toPlaces(value, places))),
+    number,
+    rounded: (value, places) => number(toPlaces(value, places), Math.max(places, 0)),
     amount: (value, places) =>
       minus(
-        new Intl.NumberFormat(locale, {
-          minimumFractionDigits: Number.isInteger(value) ? 0 : places,
-          maximumFractionDigits: Math.max(places, FINEST),
-        }).format(value),
+        formatter(locale, withPlaces(Number.isInteger(value) ? 0 : places, Math.max(places, FINEST))).format(value),
       ),
     price: (amount) => minus((isFiner(amount, own) ? finer : price).format(amount)),
     about: (amount) => (Math.abs(amount) < 100 ? minus(price.format(amount)) : money(Math.round(amount), 0)),
     money,
     moneyTo: (amount, places) => money(toPlaces(amount, places), Math.max(places, 0)),
     change: (percent) => minus(change.format(percent / 100)),
-    percent: (value, places) => minus(percentFormat(locale, places).format(value / 100)),
-    share: (value) => minus(share.format(value)),
+    percent: (value, places) => minus(percent(places).format(value / 100)),
+    share: (value) => minus(percent(0).format(value)),
     period: (text, style) => periodName(text, every, yearStarts, locale, style),
     span: (first, last) => spanName(first, last, every, yearStarts, locale),
     position: (position) => positionName(position, every, yearStarts, locale),
@@ -96,20 +85,17 @@ const toPlaces = (value: number, places: number): number => {
   return rounded === 0 ? 0 : rounded;
 };
 
-const percentFormat = (locale: string, places: number): Intl.NumberFormat =>
-  new Intl.NumberFormat(locale, { style: 'percent', minimumFractionDigits: places, maximumFractionDigits: places });
-
 const made = new Map<string, Intl.NumberFormat>();
 
-function numberFormat(locale: string, places: number): Intl.NumberFormat {
-  const key = `${locale} ${places}`;
-  const format =
-    made.get(key) ??
-    new Intl.NumberFormat(locale, {
-      minimumFractionDigits: places,
-      maximumFractionDigits: places,
-      signDisplay: 'negative',
-    });
+/** Made once for each locale and kind: making one takes far longer than using it. */
+function formatter(locale: string, options: Intl.NumberFormatOptions): Intl.NumberFormat {
+  const key = `${locale} ${JSON.stringify(options)}`;
+  const format = made.get(key) ?? new Intl.NumberFormat(locale, options);
   made.set(key, format);
   return format;
 }
+
+const withPlaces = (least: number, most = least): Intl.NumberFormatOptions => ({
+  minimumFractionDigits: least,
+  maximumFractionDigits: most,
+});

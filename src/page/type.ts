@@ -86,7 +86,7 @@ const styleRules = async (style: Style, characters: readonly string[]): Promise<
 /** Letters, digits and signs that English and its typography use, with the stand-ins. */
 const plainLatin: ReadonlySet<string> = new Set([
   ...Array.from({ length: 0x7e - 0x20 + 1 }, (_, i) => String.fromCodePoint(0x20 + i)),
-  ...'\u00a0£±°·×½–—‘’“”…€−↑↓\u2009\u2010',
+  ...'\u00a0£¥±°·×÷½–—‘’“”…€−↑↓\u2009\u2010',
   ...standIns.keys(),
 ]);
 
