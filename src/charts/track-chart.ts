@@ -1,6 +1,5 @@
 /** How forecasts one step ahead turned out: each one's range and what happened, as shares of what was expected. */
 import type { TopLevelSpec } from 'vega-lite';
-import type { BriefRecord } from '../record/record.js';
 import { draw, labelled } from './draw.js';
 import { BAND, INK, PAPER, QUIET } from './look.js';
 import { niceTicks } from './ticks.js';
@@ -16,8 +15,16 @@ export interface TrackWords {
 const MOST = 12;
 
 /** Null where a share has no meaning: something expected at or below zero, or nothing to show. */
-export function trackChart({ trackRecord }: BriefRecord, words: TrackWords): Promise<string> | null {
-  const shown = trackRecord?.nextPeriod.slice(-MOST) ?? [];
+/** A forecast one step ahead, and what happened. */
+export interface Tracked {
+  readonly period: string;
+  readonly expected: number;
+  readonly range80: readonly [number, number];
+  readonly actual: number;
+}
+
+export function trackChart(forecasts: readonly Tracked[], words: TrackWords): Promise<string> | null {
+  const shown = forecasts.slice(-MOST);
   if (shown.length === 0 || shown.some(({ expected }) => !(expected > 0))) return null;
   const points = shown.map(({ expected, range80, actual }, i) => ({
     i,

@@ -5,6 +5,7 @@ import { renderBrief } from '../page/brief.js';
 import { renderCover } from '../page/cover.js';
 import type { Printer } from '../page/print.js';
 import {
+  earlierRecords,
   type FiledRecord,
   type Files,
   filedKinds,
@@ -64,7 +65,7 @@ export async function makeBriefs(work: Work, tasks: readonly Task[], printer: Pr
 async function makeBrief(work: Work, task: Task, printer: Printer | null, made: Made): Promise<void> {
   const { plan, archive, options } = work;
   const { slug } = task.series;
-  const filed = task.filed ?? recordOf(task, folderOf(work), made);
+  const filed = task.filed ?? (await recordOf(work, task, made));
   const files = await filesOf(work, task, filed, printer);
   if (task.filed !== null && task.there !== null) {
     const missing = missingKinds(task.there, options);
@@ -79,8 +80,16 @@ async function makeBrief(work: Work, task: Task, printer: Printer | null, made: 
   made.records.set(slug, filed);
 }
 
-function recordOf({ inputs }: Task, folder: string, made: Made): FiledRecord {
-  const { record, money } = assembleWithMoney(inputs, { version: SOFTWARE.version, folder });
+async function recordOf(work: Work, { inputs, series }: Task, made: Made): Promise<FiledRecord> {
+  const { archive, plan, report } = work;
+  const { records: earlier, damaged } = await earlierRecords(archive, plan.issued, [
+    series.slug,
+    ...series.formerSlugs,
+  ]);
+  for (const file of damaged)
+    report.message(`series "${series.name}": ${file} can't be read as a record, and the look back leaves it out`);
+  const origin = { version: SOFTWARE.version, folder: folderOf(work) };
+  const { record, money } = assembleWithMoney(inputs, origin, earlier);
   if (money !== null) made.money.set(record.series.slug, money);
   return { record, sha256: sha256(canonicalJson(record)) };
 }

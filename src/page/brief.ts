@@ -16,6 +16,7 @@ import { firstPage } from './first-page.js';
 import { type Formats, formatsOf } from './formats.js';
 import { madeOf, sumTable } from './how-made.js';
 import { judgementView } from './judgement.js';
+import { lookBackView } from './look-back.js';
 import { orderView } from './order.js';
 import type { Theme } from './theme.js';
 import { assumptionRows } from './trust.js';
@@ -40,7 +41,8 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     periods: periodsTable(record, theme, formats),
     judgement: judgement?.annex ?? null,
     budget: decision?.budget?.annex ?? null,
-    past: past.height > MOST_PAST_ROWS ? past : null,
+    // Looking back takes the room of the past figures.
+    past: past.height > MOST_PAST_ROWS || record.lookBack !== null ? past : null,
   };
   const view = {
     lang: plan.locale,
@@ -61,6 +63,7 @@ export async function renderBrief(record: BriefRecord, theme: Theme, options: Br
     first,
     decision,
     judgement,
+    back: await lookBackView(record, theme, formats),
     made: madeOf(record, theme, formats, (tex) => equationHtml(tex, theme, plan.locale)),
     sum: sumTable(record, theme, formats),
     meanings: meaningRows(record, theme, formats),

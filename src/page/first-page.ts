@@ -11,6 +11,7 @@ import { plainText } from './document.js';
 import { figuresTable } from './figures-table.js';
 import type { Formats } from './formats.js';
 import { judgedSentences } from './judgement.js';
+import { lookBackSentences } from './look-back.js';
 import { orderReason, orderSentence } from './order.js';
 import { MANY_ROWS, roomFor } from './room.js';
 import { answerSentence, capital, caveatSentences, reasons } from './sentences.js';
@@ -28,7 +29,7 @@ export async function firstPage(record: BriefRecord, theme: Theme, formats: Form
     todo: todoOf(record, theme, formats),
     figures: figuresTable(record, theme, formats),
     reasons: reasons(record, theme, formats),
-    trust: trustSentences(record, theme, formats).join(' '),
+    trust: [...trustSentences(record, theme, formats), ...lookBackSentences(record, theme, formats)].join(' '),
     caveats: caveatSentences(record, theme, formats),
   };
   const rows = texts.figures.rows.length;
@@ -125,7 +126,7 @@ async function trackOf(record: BriefRecord, theme: Theme, formats: Formats) {
   const shown = record.trackRecord?.nextPeriod.slice(-12) ?? [];
   const inside = shown.filter(({ actual, range80 }) => actual >= range80[0] && actual <= range80[1]).length;
   const facts = { every, count: formats.number(shown.length, 0), inside: formats.number(inside, 0) };
-  const svg = await trackChart(record, {
+  const svg = await trackChart(shown, {
     described: plainText(theme.say('trust.picture.described', facts)),
     share: (share) => formats.change(100 * share),
     periodName: (period) => formats.period(period, 'short'),

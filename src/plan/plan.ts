@@ -57,6 +57,10 @@ export interface PlannedFigures {
 export interface PlannedSeries {
   readonly name: string;
   readonly slug: string;
+  /** Names that earlier briefs had for it. */
+  readonly formerly: readonly string[];
+  /** What these names made of their files. */
+  readonly formerSlugs: readonly string[];
   readonly column: string;
   readonly unit: string;
   readonly places: number;
@@ -230,6 +234,8 @@ const seriesOf = (series: SeriesText, slug: string, path: Path, document: Locate
   return {
     name: series.name,
     slug,
+    formerly: series.formerly,
+    formerSlugs: series.formerly.flatMap((name) => slugsOf([name])),
     column: series.column.trim(),
     unit: series.unit,
     places: series.places,

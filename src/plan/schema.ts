@@ -241,6 +241,10 @@ const priors = z.strictObject(
 const series = z.strictObject(
   {
     name: line.describe('what the brief calls the series'),
+    formerly: z
+      .union([line.transform((name) => [name]), z.array(line)], { error: 'should be a name or a list of names' })
+      .default([])
+      .describe('what earlier briefs called it, so that they are found'),
     column: line.describe('the column of the figures that holds it, or in a long file its entry in the series column'),
     unit: line.describe('what is counted, such as litres'),
     places: wholeFrom(0, 6).default(0).describe('decimal places shown'),

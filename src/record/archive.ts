@@ -76,7 +76,7 @@ async function removeEmpty(folder: string, top: string): Promise<void> {
 
 /** The firm whose briefs the archive holds, as its newest cover names it; null in a new archive. */
 export async function filedFor(archive: Archive): Promise<string | null> {
-  const dates = (await readdir(archive.folder)).filter((name) => /^\d{4}-\d{2}-\d{2}$/.test(name)).sort();
+  const dates = (await readdir(archive.folder)).filter(isDated).sort();
   for (const date of dates.reverse()) {
     const cover = await filedCover(archive, date);
     if (cover !== null) return cover.plan.preparedFor;
@@ -135,6 +135,34 @@ export async function filedRecords(
   }
   return records;
 }
+
+/**
+ * The records under these slugs in the dated folders before `date`, the oldest first, and the files among them that
+ * can't be read as records.
+ */
+export async function earlierRecords(
+  archive: Archive,
+  date: string,
+  slugs: readonly string[],
+): Promise<{ records: FiledRecord[]; damaged: string[] }> {
+  const dates = (await readdir(archive.folder)).filter((name) => isDated(name) && name < date).sort();
+  const records: FiledRecord[] = [];
+  const damaged: string[] = [];
+  for (const folder of dates)
+    for (const slug of slugs) {
+      const file = join(archive.folder, folder, `${slug}.json`);
+      const text = await whereThere(() => readFile(file, 'utf8'), null);
+      if (text === null) continue;
+      try {
+        records.push(parsedRecord(text));
+      } catch (error) {
+        damaged.push(`${file} (${firstLine(error)})`);
+      }
+    }
+  return { records, damaged };
+}
+
+const isDated = (name: string): boolean => /^\d{4}-\d{2}-\d{2}$/.test(name);
 
 const parsedRecord = (text: string): FiledRecord => ({
   record: recordSchema.parse(JSON.parse(text)),

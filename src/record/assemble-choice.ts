@@ -46,7 +46,15 @@ export function assembleChoice(
   return {
     issued: plan.issued,
     plan: planPart(plan, templates),
-    series: { name: series.name, slug: series.slug, unit: series.unit, places: series.places, every, season },
+    series: {
+      name: series.name,
+      slug: series.slug,
+      formerly: [...series.formerly],
+      unit: series.unit,
+      places: series.places,
+      every,
+      season,
+    },
     figures: {
       start,
       values,

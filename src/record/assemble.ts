@@ -10,17 +10,19 @@ import { adviceForecasts } from '../advice/advise.js';
 import { checkAssumptions } from '../assumptions/assumptions.js';
 import { modelForecasts } from '../backtest/roll.js';
 import { trackRecord as scored } from '../backtest/track-record.js';
-import { periodIndex, position, yearOf } from '../calendar/calendar.js';
+import { periodIndex, position } from '../calendar/calendar.js';
 import type { Context } from '../explain/context.js';
 import { explain } from '../explain/explain.js';
-import { makeOutlook, type Outlook, type Span } from '../outlook/outlook.js';
-import { type Fit, type FitOptions, fitModel } from '../sarima/fit.js';
+import type { Outlook } from '../outlook/outlook.js';
+import type { Fit } from '../sarima/fit.js';
 import { parseScale } from '../sarima/scale.js';
 import { autocorrelations } from '../stats/autocorrelation.js';
-import { seedOf } from '../stats/generator.js';
+import type { FiledRecord } from './archive.js';
 import { budgetPart, judgementPart, type Money, moneyOf, purchasePart, withJudgement } from './assemble-decisions.js';
 import { caveatsWith } from './caveats.js';
+import { fitOf, fitOptionsOf, outlookOf } from './computed.js';
 import { type BriefInputs, inputsOfRecord, periodAt } from './inputs.js';
+import { lookBackAt } from './look-back.js';
 import { type BriefRecord, recordSchema } from './record.js';
 
 /** Where the record comes from: the program's version, and the folder that its brief is filed in (a date, or `trial`). */
@@ -30,11 +32,11 @@ export interface Origin {
 }
 
 /**
- * Computes a record. Throws an Error that says what is wrong where the model can't be fitted to the figures (too few of
+ * Computes a record. `earlier` are the filed records of the series, for the look back. Throws an Error that says what is wrong where the model can't be fitted to the figures (too few of
  * them, a figure that the scale can't hold …).
  */
-export function assemble(inputs: BriefInputs, origin: Origin): BriefRecord {
-  return assembleWithMoney(inputs, origin).record;
+export function assemble(inputs: BriefInputs, origin: Origin, earlier: readonly FiledRecord[] = []): BriefRecord {
+  return assembleWithMoney(inputs, origin, earlier).record;
 }
 
 /** The money of a record that has a budget, computed again from the record itself. */
@@ -45,13 +47,18 @@ export function moneyOfRecord(record: BriefRecord): Money {
 }
 
 /** The record, and where it has a budget its money on every path, which the record leaves out. */
-export function assembleWithMoney(inputs: BriefInputs, origin: Origin): { record: BriefRecord; money: Money | null } {
+export function assembleWithMoney(
+  inputs: BriefInputs,
+  origin: Origin,
+  earlier: readonly FiledRecord[] = [],
+): { record: BriefRecord; money: Money | null } {
   const fit = fitOf(inputs);
   const alone = outlookOf(fit, inputs);
   const outlook = withJudgement(alone, inputs);
   const explained = explain(fit, { alone, outlook }, contextOf(inputs));
   const assumptions = assumptionsOf(fit, inputs);
   const trackRecord = trackRecordOf(fit, inputs);
+  const shown = outlookPart(outlook, inputs);
   const judgement = judgementPart(expectations(alone, inputs), explained.printed, inputs);
   const purchase = purchasePart(outlook, inputs);
   const record = recordSchema.parse({
@@ -65,7 +72,7 @@ export function assembleWithMoney(inputs: BriefInputs, origin: Origin): { record
     model: inputs.model,
     fit: fitPart(fit, inputs),
     equation: explained.equation,
-    outlook: outlookPart(outlook, inputs),
+    outlook: shown,
     printed: explained.printed,
     facts: {
       ...explained.facts,
@@ -76,30 +83,10 @@ export function assembleWithMoney(inputs: BriefInputs, origin: Origin): { record
     judgement,
     purchase,
     budget: budgetPart(outlook, inputs),
-    lookBack: null,
+    lookBack: lookBackAt(earlier, { inputs, outlook: shown, printed: explained.printed }),
   });
   return { record, money: inputs.budget === null ? null : moneyOf(outlook, inputs, inputs.budget) };
 }
-
-function fitOptionsOf({ figures, model, series }: BriefInputs): FitOptions {
-  const first = periodIndex(figures.start, series.every);
-  return {
-    form: model.form,
-    scale: model.scale,
-    constant: model.constant,
-    fittedBy: model.fittedBy,
-    priors: model.priors,
-    regressors: figures.regressors,
-    soldOut: figures.soldOut.map((period) => periodIndex(period, series.every) - first),
-    season: series.season,
-  };
-}
-
-const fitOf = (inputs: BriefInputs, fittedBy = inputs.model.fittedBy): Fit =>
-  fitModel(
-    inputs.figures.values.map((value) => value ?? Number.NaN),
-    { ...fitOptionsOf(inputs), fittedBy },
-  );
 
 /** What maximum likelihood makes of a model that was shrunk; null where it needs more figures than there are. */
 function unrestrictedOf(fit: Fit, inputs: BriefInputs): BriefRecord['fit']['unrestricted'] {
@@ -111,14 +98,6 @@ function unrestrictedOf(fit: Fit, inputs: BriefInputs): BriefRecord['fit']['unre
     return null;
   }
 }
-
-const outlookOf = (fit: Fit, inputs: BriefInputs): Outlook =>
-  makeOutlook(fit, {
-    ahead: inputs.ahead,
-    seed: seedOf(`${inputs.issued}/${inputs.series.slug}`),
-    holdAtZero: inputs.figures.values.every((value) => value === null || value >= 0),
-    spans: [aheadSpan(inputs), ...yearsAhead(inputs), ...reportingYears(inputs)],
-  });
 
 const assumptionsOf = (fit: Fit, inputs: BriefInputs): BriefRecord['assumptions'] =>
   checkAssumptions(fit).map(({ outliers, details, ...rest }) => ({
@@ -157,51 +136,6 @@ function trackRecordOf(fit: Fit, inputs: BriefInputs): BriefRecord['trackRecord'
     inside80ByStep: [...record.inside80ByStep],
     nextPeriod,
   };
-}
-
-const aheadSpan = ({ ahead }: BriefInputs): Span => ({
-  kind: 'ahead',
-  year: null,
-  known: 0,
-  steps: Array.from({ length: ahead }, (_, step) => step),
-});
-
-/** More periods than this are shown by the year on page 1. */
-const MOST_ROWS = 13;
-
-function yearsAhead({ ahead, series }: BriefInputs): Span[] {
-  if (ahead <= MOST_ROWS) return [];
-  return Array.from({ length: Math.ceil(ahead / series.season) }, (_, year) => ({
-    kind: 'year-ahead',
-    year: null,
-    known: 0,
-    steps: Array.from(
-      { length: Math.min(series.season, ahead - year * series.season) },
-      (_, i) => year * series.season + i,
-    ),
-  }));
-}
-
-/** The reporting years that the periods ahead reach into and that figures and outlook together cover in full. */
-function reportingYears({ series, figures, plan, ahead }: BriefInputs): Span[] {
-  const { every, season } = series;
-  const first = periodIndex(figures.start, every);
-  const n = figures.values.length;
-  const years = Array.from({ length: n + ahead }, (_, t) => yearOf(first + t, every, plan.yearStarts));
-  return [...new Set(years.slice(n))].flatMap((year): Span[] => {
-    const of = years.flatMap((each, t) => (each === year ? [t] : []));
-    const known = of.filter((t) => t < n).map((t) => figures.values[t]);
-    const begins = of[0] !== undefined && position(first + of[0], every, plan.yearStarts) === 1;
-    if (!begins || of.length < season || known.includes(null)) return [];
-    return [
-      {
-        kind: 'reporting-year',
-        year,
-        known: known.reduce<number>((sum, value) => sum + (value ?? 0), 0),
-        steps: of.filter((t) => t >= n).map((t) => t - n),
-      },
-    ];
-  });
 }
 
 function contextOf(inputs: BriefInputs): Context {

@@ -42,6 +42,7 @@ export function briefInputs(
     series: {
       name: series.name,
       slug: series.slug,
+      formerly: [...series.formerly],
       unit: series.unit,
       places: series.places,
       every,

@@ -8,6 +8,7 @@
  */
 import { z } from 'zod';
 import { budget, judgementEntry, purchase } from './decided.js';
+import { lookBack } from './looked-back.js';
 
 const number = z.number();
 const missable = z.number().nullable();
@@ -375,6 +376,8 @@ export const recordSchema = z.strictObject({
   series: z.strictObject({
     name: z.string(),
     slug: z.string(),
+    /** What earlier briefs called it. */
+    formerly: z.array(z.string()),
     unit: z.string(),
     places: count,
     every: z.enum(['week', 'four-weeks', 'month', 'quarter', 'half-year', 'year']),
@@ -479,7 +482,8 @@ export const recordSchema = z.strictObject({
     .nullable(),
   purchase: purchase.nullable(),
   budget: budget.nullable(),
-  lookBack: z.null(),
+  /** How earlier briefs turned out; null where there are none. */
+  lookBack: lookBack.nullable(),
 });
 
 export type BriefRecord = z.infer<typeof recordSchema>;

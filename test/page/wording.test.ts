@@ -3,6 +3,7 @@ import { beforeAll, describe, expect, test } from 'vitest';
 import { budgetSentence, budgetView } from '../../src/page/budget.js';
 import { formatsOf } from '../../src/page/formats.js';
 import { judgedSentences } from '../../src/page/judgement.js';
+import { lookBackSentences, lookBackView } from '../../src/page/look-back.js';
 import { orderReason, orderSentence, orderView } from '../../src/page/order.js';
 import { answerSentence, caveatSentences, reasons } from '../../src/page/sentences.js';
 import { loadTheme, type Theme } from '../../src/page/theme.js';
@@ -359,6 +360,69 @@ describe.each(['en-GB', 'de-DE'])('%s', (locale) => {
     const none = make(every, () => ({}));
     expectClean(trustSentences(none, theme(), formats(none)));
   });
+
+  test.each(KINDS)(
+    'the look back, each %s: inside and outside, up and down, every cause, one and many',
+    async (...every) => {
+      const [, , period] = every;
+      const outcome = (actual: number) => ({
+        brief: '2026-07-06/antifouling-paint',
+        issued: '2026-07-06',
+        period,
+        expected: 240,
+        range80: [200, 280] as [number, number],
+        range95: [180, 300] as [number, number],
+        actual,
+      });
+      const causes = ['program', 'revised', 'observed', 'estimated', 'model'] as const;
+      for (const actual of [240, 290, 400, 0])
+        for (const count of [1, 5])
+          for (const cause of causes)
+            for (const by of [-60, 60]) {
+              const none = { program: 0, revised: 0, observed: 0, estimated: 0, model: 0 };
+              const changed = { was: 240, now: 240 + by, parts: { ...none, [cause]: by } };
+              const lookBack: BriefRecord['lookBack'] = {
+                earlier: [],
+                unlike: [{ brief: 'x', sha256: 'y', reason: count === 1 ? 'unit' : 'counting' }],
+                running: { count, inside80: count - 1, inside95: count, miss: actual === 0 ? null : 0.002 * actual },
+                next: Array.from({ length: count }, () => outcome(actual)),
+                last: [outcome(actual)],
+                change: {
+                  brief: 'x',
+                  issued: '2026-07-06',
+                  periods: [{ ...changed, period }],
+                  total: changed,
+                  printed: changed,
+                },
+                order: {
+                  brief: 'x',
+                  issued: '2026-07-06',
+                  span: [period, period],
+                  ordered: 100,
+                  isDecided: false,
+                  demand: 90 + by,
+                  leftOver: Math.max(10 - by, 0),
+                  lost: Math.max(by - 10, 0),
+                },
+                judgement: {
+                  brief: 'x',
+                  issued: '2026-07-06',
+                  what: ['A fair'],
+                  periods: [period],
+                  withIt: actual,
+                  without: 240,
+                },
+              };
+              const record = make(every, () => ({ lookBack }));
+              expectClean(lookBackSentences(record, theme(), formats(record)));
+              if (locale !== 'en-GB') continue;
+              const view = await lookBackView(record, theme(), formats(record));
+              expectClean([view?.text ?? '']);
+              for (const cell of [...(view?.rows ?? []).flatMap(({ cells }) => cells), ...(view?.change?.cells ?? [])])
+                expect(cell).not.toMatch(SLIPS);
+            }
+    },
+  );
 
   test('every assumption in every state', () => {
     const ids = [

@@ -29,7 +29,7 @@ export function sampleRecord(changes: SampleChanges = {}): BriefRecord {
       yearStarts: 1,
       templates: '0'.repeat(64),
     },
-    series: { name, slug, unit: 'litres', places: 0, every: 'quarter', season: 4 },
+    series: { name, slug, formerly: [], unit: 'litres', places: 0, every: 'quarter', season: 4 },
     figures: {
       start: '2025-Q1',
       values: changes.values ?? [212, 250, 310, 240],
