@@ -10,6 +10,7 @@ import { readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
 import { create, type Font } from 'fontkit';
 import subsetFont from 'subset-font';
+import { madeFont } from './made-fonts.js';
 
 export type Family = 'serif' | 'sans';
 
@@ -72,15 +73,20 @@ const scripts = ['latin', 'latin-ext', 'greek', 'cyrillic', 'cyrillic-ext', 'vie
 
 const openFace = async (style: Style, script: string): Promise<Face> => {
   const { family, weight, italic } = style;
+  const name = `${family} ${weight} ${italic ? 'italic' : 'upright'} ${script}`;
+  const data = (await madeFont(`${name}.ttf`)) ?? (await cutFace(style, script));
+  return { name, script, data, font: openFont(data) };
+};
+
+const cutFace = async (style: Style, script: string): Promise<Buffer> => {
   const packed = await readFile(
     resolve(script === signs ? 'katex/dist/fonts/KaTeX_Main-Regular.woff2' : fileOf(style, script)),
   );
   const characters = String.fromCodePoint(...openFont(packed).characterSet);
-  const data = await subsetFont(packed, characters, {
+  return subsetFont(packed, characters, {
     targetFormat: 'sfnt',
-    ...(script !== signs && { variationAxes: { wght: weight } }),
+    ...(script !== signs && { variationAxes: { wght: style.weight } }),
   });
-  return { name: `${family} ${weight} ${italic} ${script}`, script, data, font: openFont(data) };
 };
 
 const resolve = createRequire(import.meta.url).resolve;

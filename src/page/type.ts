@@ -4,11 +4,13 @@
  * The cuts are shared by documents: the Latin fonts come in two sizes only, plain and whole, so that of hundreds of
  * briefs nearly all embed the same data, which is made once a process.
  */
+import { createHash } from 'node:crypto';
 import { readFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
 import { dirname, join } from 'node:path';
 import { create, type Font } from 'fontkit';
 import subsetFont from 'subset-font';
+import { madeFont } from '../charts/made-fonts.js';
 import { type Face, faceOf, familyNames, openFaces, type Style, styles } from '../charts/typefaces.js';
 
 /**
@@ -70,7 +72,7 @@ const styleRules = async (style: Style, characters: readonly string[]): Promise<
   }
   return await Promise.all(
     [...used].map(async ([face, own]) => {
-      const set = face.script === 'latin' ? latinSet(face, own) : own;
+      const set = face.script === 'latin' ? latinSet(face, own) : plainOr(own, face.script);
       return fontFaceRule({
         family: familyNames[style.family],
         style: style.italic ? 'italic' : 'normal',
@@ -86,9 +88,23 @@ const styleRules = async (style: Style, characters: readonly string[]): Promise<
 /** Letters, digits and signs that English and its typography use, with the stand-ins. */
 const plainLatin: ReadonlySet<string> = new Set([
   ...Array.from({ length: 0x7e - 0x20 + 1 }, (_, i) => String.fromCodePoint(0x20 + i)),
-  ...'\u00a0£¥±°·×÷½–—‘’“”…€−↑↓\u2009\u2010',
+  ...'\u00a0£¥±°·×÷½–—‘’“”…€−↑↓\u2009\u200b\u2010',
   ...standIns.keys(),
 ]);
+
+/** What models and their equations need of the other fonts, by script or by the equations' own face. */
+const plainSets: ReadonlyMap<string, string> = new Map([
+  ['greek', 'ΘΦβεθφϕ'],
+  ['signs', '∇'],
+  ['KaTeX_Main normal 400', '()+,.0123456789=BcglotuxyzΘΦ∇−'],
+  ['KaTeX_Math italic 400', '0123456789BcglotuxyzΘΦβεθϕ'],
+]);
+
+/** A plain set where it holds all that is used, so that documents share it; else what is used. */
+const plainOr = (used: readonly string[], key: string): readonly string[] => {
+  const plain = plainSets.get(key) ?? '';
+  return used.every((character) => plain.includes(character)) ? [...plain].sort(byCodePoint) : used;
+};
 
 const latinSet = (face: Face, used: readonly string[]): string[] => {
   const whole = used.some((character) => !plainLatin.has(character));
@@ -149,16 +165,21 @@ const faceKey = (rule: string): string => {
   return `${family} ${italic ? 'italic' : 'normal'} ${bold ? 700 : 400}`;
 };
 
-const equationFace = async (rule: string, characters: readonly string[]): Promise<string[]> => {
+const equationFont = async (rule: string): Promise<Buffer> => {
   const file = rule.match(/url\(([^)]*\.woff2)\)/)?.[1];
   if (file === undefined) throw new Error(`The equations' style sheet names no woff2 file in "${rule}".`);
-  const data = await readFile(join(dirname(resolve('katex/dist/katex.min.css')), file));
+  return readFile(join(dirname(resolve('katex/dist/katex.min.css')), file));
+};
+
+const equationFace = async (rule: string, characters: readonly string[]): Promise<string[]> => {
+  const data = await equationFont(rule);
   // fontkit types what it opens as a font or a collection; these files hold one font each.
   const font = create(data) as Font;
   const own = characters.filter((character) => font.hasGlyphForCodePoint(codePointOf(character)));
   if (own.length === 0) return [];
   const [family, style, weight] = faceKey(rule).split(' ');
-  return [fontFaceRule({ family, style, weight, range: own, data: await subset(file, data, own) })];
+  const set = plainOr(own, faceKey(rule));
+  return [fontFaceRule({ family, style, weight, range: set, data: await subset(faceKey(rule), data, set) })];
 };
 
 // Data ----------------------------------------------------------------------------------------------------------
@@ -191,8 +212,38 @@ const subsets = new Map<string, Promise<string>>();
 const subset = (name: string, data: Buffer, characters: readonly string[]): Promise<string> => {
   const text = characters.join('');
   const key = `${name} ${text}`;
-  const made =
-    subsets.get(key) ?? subsetFont(data, text, { targetFormat: 'woff2' }).then((cut) => cut.toString('base64'));
+  const made = subsets.get(key) ?? cutSubset(name, data, text).then((cut) => cut.toString('base64'));
   subsets.set(key, made);
   return made;
+};
+
+const cutSubset = async (name: string, data: Buffer, text: string): Promise<Buffer> =>
+  (await madeFont(madeName(name, text))) ?? (await subsetFont(data, text, { targetFormat: 'woff2' }));
+
+/** Told apart by what the font is cut down to. */
+const madeName = (name: string, text: string): string =>
+  `${name} ${createHash('sha256').update(text).digest('hex').slice(0, 16)}.woff2`;
+
+/** For the build: every font cut down to its plain set, by the name that it is kept by. */
+export const plainFonts = async (): Promise<{ name: string; data: Buffer }[]> => {
+  const faces = (await Promise.all(styles.map(openFaces))).flat();
+  const rules = (await equationSheet()).match(faceRule) ?? [];
+  const whole = [
+    ...faces.map(({ name, script, data }) => ({ name, key: script, data })),
+    ...(await Promise.all(
+      rules
+        .filter((rule) => plainSets.has(faceKey(rule)))
+        .map(async (rule) => ({ name: faceKey(rule), key: faceKey(rule), data: await equationFont(rule) })),
+    )),
+  ];
+  return Promise.all(
+    whole.flatMap(({ name, key, data }) => {
+      const plain = key === 'latin' ? [...plainLatin].join('') : plainSets.get(key);
+      if (plain === undefined) return [];
+      const text = [...plain].sort(byCodePoint).join('');
+      return [
+        subsetFont(data, text, { targetFormat: 'woff2' }).then((cut) => ({ name: madeName(name, text), data: cut })),
+      ];
+    }),
+  );
 };
