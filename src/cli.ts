@@ -56,6 +56,16 @@ program
   .addHelpText('after', '\nExample:\n  seasonbrief write plan.yaml --only "Antifouling paint" --trial')
   .action(write);
 
+program
+  .command('recheck')
+  .description('compute filed briefs again and confirm them, their pages and the ledger; changes nothing')
+  .argument('[out]', "the archive's folder", 'out')
+  .option('--only <name>', 'the briefs of this series only; may be given several times', collect, [])
+  .option('--no-pdf', 'leave the PDFs out, which take longest')
+  .option('--quiet', 'say nothing unless something is wrong')
+  .addHelpText('after', '\nExample:\n  seasonbrief recheck my-briefs/out --no-pdf')
+  .action(recheck);
+
 interface AdviseArguments {
   readonly out?: string;
   readonly only: readonly string[];
@@ -83,6 +93,13 @@ class Interrupted extends Error {
   }
 }
 
+/** Is aborted when the user or the system asks the program to end. */
+function interruption(): AbortSignal {
+  const stop = new AbortController();
+  for (const signal of ['SIGINT', 'SIGTERM'] as const) process.once(signal, () => stop.abort(new Interrupted(signal)));
+  return stop.signal;
+}
+
 interface WriteArguments {
   readonly out?: string;
   readonly only: readonly string[];
@@ -96,15 +113,30 @@ async function write(plan: string, { quiet = false, ...options }: WriteArguments
   // Loaded when it is needed: charts and the browser's driver take a second that --help can do without.
   const { writeBriefs } = await import('./commands/write.js');
   const { report, end } = reporter(quiet);
-  const stop = new AbortController();
-  for (const signal of ['SIGINT', 'SIGTERM'] as const) process.once(signal, () => stop.abort(new Interrupted(signal)));
-  const result = await writeBriefs(plan, { ...options, report, signal: stop.signal }).finally(end);
+  const result = await writeBriefs(plan, { ...options, report, signal: interruption() }).finally(end);
   for (const name of result.unchanged) if (!quiet) err(`${name}: filed already and unchanged; left as it is`);
   if (!quiet && result.files.length > 0) {
     err('Open:');
     for (const file of result.files) out(shortPath(file));
   }
   tellFailures(result.failures, result.written.length);
+}
+
+interface RecheckArguments {
+  readonly only: readonly string[];
+  readonly pdf: boolean;
+  readonly quiet?: boolean;
+}
+
+async function recheck(folder: string, { quiet = false, ...options }: RecheckArguments): Promise<void> {
+  const [{ recheckArchive }, { recheckLines }] = await Promise.all([
+    import('./commands/recheck.js'),
+    import('./commands/recheck-lines.js'),
+  ]);
+  const { report, end } = reporter(quiet);
+  const result = await recheckArchive(folder, { ...options, report, signal: interruption() }).finally(end);
+  for (const line of recheckLines(result, { onlyFaults: quiet })) out(line);
+  if (!result.agrees) process.exitCode = SOME_FAILED;
 }
 
 function tellFailures(failures: readonly { readonly name: string; readonly message: string }[], done: number): void {

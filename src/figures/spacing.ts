@@ -15,6 +15,8 @@ const SPACINGS: readonly (readonly [Every, number, number])[] = [
 export function everyOfDates(dates: readonly string[]): Every | null {
   const days = [...new Set(dates.map(dayOf))].sort((a, b) => a - b);
   const steps = days.slice(1).map((day, i) => day - days[i]);
+  // One step of 28 days can be four weeks, or a month from the end of January or the start of February.
+  if (steps.length === 1 && steps[0] === 28) return null;
   for (const [every, least, most] of SPACINGS) {
     const fitting = steps.filter((step) => step >= least && step <= most).length;
     const shorter = steps.some((step) => step < least);

@@ -45,6 +45,8 @@ export interface PlannedFigures {
   readonly period: string;
   /** Null: as found in the file. */
   readonly every: Every | null;
+  /** Null: as found in the file. */
+  readonly decimal: 'point' | 'comma' | null;
   /** Both null in a wide file. */
   readonly series: string | null;
   readonly value: string | null;
@@ -221,6 +223,7 @@ const figuresOf = (figures: PlanText['figures'], folder: string, { placeOf }: Lo
   fileTyped: figures.file,
   period: figures.period.trim(),
   every: figures.every ?? null,
+  decimal: figures.decimal ?? null,
   series: figures.series?.trim() ?? null,
   value: figures.value?.trim() ?? null,
   at: placeOf(['figures', 'file'], 'value'),

@@ -271,6 +271,9 @@ const figures = z.strictObject(
     file: line.describe('the file of past figures, as seen from the plan'),
     period: line.describe('the column that holds the period'),
     every: oneOf(everies).optional().describe('how often a figure stands; left out: as found'),
+    decimal: oneOf(['point', 'comma'])
+      .optional()
+      .describe('the decimal sign of the figures, where they don’t show it themselves; left out: as found'),
     series: line.optional().describe('in a long file, the column that says which series a row is of'),
     value: line.optional().describe('in a long file, the column that holds the figure'),
   },

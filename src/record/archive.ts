@@ -11,7 +11,7 @@ import { sha256 } from './canonical.js';
 import { type CoverRecord, coverSchema } from './cover.js';
 import { whereThere, writeDurably } from './disk.js';
 import { abandon, commit, type Recovery, recover, type Staging, stage, stagingOf } from './journal.js';
-import { chainedRows, type LedgerEntry } from './ledger.js';
+import { chainedRows, checkChain, checkLastRow, checkRowsOf, type LedgerEntry, lastRow, notHeld } from './ledger.js';
 import { type Lock, releaseLock, takeLock } from './lock.js';
 import { type BriefRecord, recordSchema } from './record.js';
 
@@ -44,8 +44,7 @@ export interface FiledBrief {
 /** Makes the folder where needed, keeps other writers out, and ends what a crash left unfinished. */
 export async function openArchive(folder: string): Promise<Archive> {
   try {
-    const made = await mkdir(folder, { recursive: true });
-    const lock = await takeLock(folder);
+    const { made, lock } = await lockedFolder(folder);
     try {
       return { folder, recovery: await recover(folder), lock, made };
     } catch (error) {
@@ -54,6 +53,35 @@ export async function openArchive(folder: string): Promise<Archive> {
     }
   } catch (error) {
     throw archiveError(error, folder);
+  }
+}
+
+async function lockedFolder(folder: string): Promise<Pick<Archive, 'made' | 'lock'>> {
+  const made = await makeFolder(folder);
+  try {
+    return { made, lock: await takeLock(folder) };
+  } catch (error) {
+    // Another writer that filed nothing took its new folder away in between.
+    if (errorCode(error) === 'ENOENT') return lockedFolder(folder);
+    if (made !== undefined) await removeEmpty(folder, made);
+    throw error;
+  }
+}
+
+/**
+ * Makes the folder and those above it where needed, and gives the topmost that was made. Node's own way of doing so says
+ * ENOENT of a disk that may only be read.
+ */
+async function makeFolder(folder: string): Promise<string | undefined> {
+  try {
+    await mkdir(folder);
+    return folder;
+  } catch (error) {
+    if (await isFolder(folder)) return undefined;
+    if (errorCode(error) !== 'ENOENT' || dirname(folder) === folder) throw error;
+    const above = await makeFolder(dirname(folder));
+    const made = await makeFolder(folder);
+    return above ?? made;
   }
 }
 
@@ -119,12 +147,8 @@ export async function filedRecords(
   date: string,
   except: ReadonlyMap<string, unknown> = new Map(),
 ): Promise<Map<string, FiledRecord>> {
-  const names = await whereThere(() => readdir(join(archive.folder, date)), []);
-  const slugs = names
-    .filter((name) => name.endsWith('.json') && name !== 'cover.json')
-    .map((name) => name.slice(0, -5));
   const records = new Map<string, FiledRecord>();
-  for (const slug of slugs.filter((each) => !except.has(each)).sort()) {
+  for (const slug of (await filedSlugs(archive, date)).filter((each) => !except.has(each))) {
     const file = join(archive.folder, date, `${slug}.json`);
     try {
       records.set(slug, parsedRecord(await readFile(file, 'utf8')));
@@ -135,6 +159,13 @@ export async function filedRecords(
   }
   return records;
 }
+
+/** The slugs of the dated folder's briefs, as far as their records are there. */
+const filedSlugs = async (archive: Archive, date: string): Promise<string[]> =>
+  (await whereThere(() => readdir(join(archive.folder, date)), []))
+    .filter((name) => name.endsWith('.json') && name !== 'cover.json')
+    .map((name) => name.slice(0, -5))
+    .sort();
 
 /**
  * The records under these slugs in the dated folders before `date`, the oldest first, and the files among them that
@@ -216,35 +247,58 @@ export async function fileBriefs(
   removals: readonly string[],
 ): Promise<void> {
   await inArchive(archive, async (staging) => {
-    const isNew = !(await whereThere(async () => (await stat(join(archive.folder, date))).isDirectory(), false));
-    const moves = isNew ? [date] : await filesBelow(staging.folder, date);
+    const briefs = (await isFolder(join(archive.folder, date))) ? await filesBelow(staging.folder, date) : [date];
+    const moves = [...(await stagedTemplates(staging)), ...briefs];
     const ledger = await whereThere(() => readFile(join(archive.folder, 'ledger.csv'), 'utf8'), null);
-    await commit(staging, { moves, removals: [...removals], ledgerRows: chainedRows(ledger, entries) });
+    await checkAgreement(archive, ledger, new Set(entries.map(({ record }) => record.brief)));
+    const ledgerRows = chainedRows(ledger, notHeld(ledger, entries));
+    await commit(staging, { moves, removals: [...removals], ledgerRows });
   });
+}
+
+/** Nothing is added to a ledger that was changed. @throws ArchiveError, but not for a brief that is made `anew`. */
+async function checkAgreement(archive: Archive, ledger: string | null, anew: ReadonlySet<string>): Promise<void> {
+  const filed: string[] = [];
+  for (const date of (await readdir(archive.folder)).filter(isDated).sort())
+    for (const slug of await filedSlugs(archive, date)) filed.push(`${date}/${slug}`);
+  checkRowsOf(
+    ledger,
+    filed.filter((brief) => !anew.has(brief)),
+  );
+  if (ledger === null) return;
+  checkChain(ledger);
+  const { brief, recordSha256 } = lastRow(ledger);
+  if (!filed.includes(brief)) return;
+  const [date = '', slug = ''] = brief.split('/');
+  const there = (await filedBrief(archive, date, slug))?.filed;
+  if (there === undefined || 'damage' in there || (anew.has(brief) && there.sha256 !== recordSha256)) return;
+  checkLastRow(ledger, there);
 }
 
 /** Puts the staged trial in place of the last one. */
 export async function fileTrial(archive: Archive): Promise<void> {
-  await inArchive(archive, (staging) => commit(staging, { moves: ['trial'], removals: [], ledgerRows: [] }));
+  await inArchive(archive, async (staging) => {
+    const moves = [...(await stagedTemplates(staging)), 'trial'];
+    await commit(staging, { moves, removals: [], ledgerRows: [] });
+  });
 }
 
-/** Keeps a user's own templates under their SHA-256, once for each version that was used. */
+/** Stages a user's own templates, to be kept under their SHA-256 once for each version that was used. */
 export async function keepTemplates(
-  { folder }: Archive,
+  archive: Archive,
   sha256: string,
   files: ReadonlyMap<string, Uint8Array>,
 ): Promise<void> {
-  const kept = join(folder, 'templates', sha256);
-  if (files.size === 0 || (await whereThere(async () => (await stat(kept)).isDirectory(), false))) return;
-  const beside = `${kept}-${randomUUID()}`;
-  try {
-    for (const [name, content] of files) await writeDurably(join(beside, name), content);
-    await rename(beside, kept);
-  } catch (error) {
-    await rm(beside, { recursive: true, force: true });
-    throw archiveError(error, folder);
-  }
+  if (await isFolder(join(archive.folder, 'templates', sha256))) return;
+  await inArchive(archive, async (staging) => {
+    for (const [name, content] of files) await stage(staging, `templates/${sha256}/${name}`, content);
+  });
 }
+
+const stagedTemplates = async (staging: Staging): Promise<string[]> =>
+  (await whereThere(() => readdir(join(staging.folder, 'templates')), [])).map((name) => `templates/${name}`);
+
+const isFolder = (path: string): Promise<boolean> => whereThere(async () => (await stat(path)).isDirectory(), false);
 
 /**
  * Writes a choice sheet in place of the one before and gives its path. A working paper needs neither journal nor lock:

@@ -39,8 +39,10 @@ export async function recover(archive: string): Promise<Recovery> {
   if (!(await isThere(staging.folder))) return 'nothing';
   const journal = await readJournal(staging);
   if (journal !== null) await carryOut(staging, journal);
+  const isEmpty = (await readdir(staging.folder)).length === 0;
   await discard(staging);
-  return journal === null ? 'undone' : 'finished';
+  if (journal !== null) return 'finished';
+  return isEmpty ? 'nothing' : 'undone';
 }
 
 /** The archive's staging folder; nothing is created before the first file is staged. */
@@ -67,7 +69,13 @@ export async function abandon(staging: Staging): Promise<void> {
   if (!(await isThere(journalOf(staging)))) await discard(staging);
 }
 
-const discard = (staging: Staging): Promise<void> => rm(staging.folder, { recursive: true, force: true });
+/** Takes the journal away last: without it, a rest of what was filed would pass for a write that was not. */
+async function discard(staging: Staging): Promise<void> {
+  const names = await whereThere(() => readdir(staging.folder), []);
+  for (const name of names.filter((each) => each !== 'journal.json'))
+    await rm(join(staging.folder, name), { recursive: true, force: true });
+  await rm(staging.folder, { recursive: true, force: true });
+}
 
 const journalOf = (staging: Staging): string => join(staging.folder, 'journal.json');
 

@@ -10,6 +10,7 @@ import { hostname } from 'node:os';
 import { join } from 'node:path';
 import { setTimeout as pause } from 'node:timers/promises';
 import { ArchiveError, errorCode } from './archive-error.js';
+import { sha256 } from './canonical.js';
 import { whereThere } from './disk.js';
 
 export interface Lock {
@@ -21,28 +22,46 @@ interface Holder {
   readonly host: string;
   /** What the system says about when the process began, in its own units; null where it says nothing. */
   readonly began: string | null;
+  /** Of this run of the program alone. */
+  readonly run?: unknown;
 }
 
-/** Locks that this process holds, so that a second writer inside it is told apart from an earlier life's lock. */
-const heldHere = new Set<string>();
+const run = randomUUID();
 
 /** @throws ArchiveError naming the other process while it is at work. */
 export async function takeLock(folder: string): Promise<Lock> {
   const file = join(folder, '.lock');
-  while (!(await createLock(file))) {
-    const found = await settledText(file);
-    if (found === null) continue;
-    const holder = holderOf(found);
-    if (holder !== null && (await isAtWork(holder, file))) throw busy(file, holder);
-    await clearStale(file, found);
-  }
-  heldHere.add(file);
+  await take(file);
   return { file };
 }
 
 export async function releaseLock(lock: Lock): Promise<void> {
-  heldHere.delete(lock.file);
   await whereThere(() => unlink(lock.file), undefined);
+}
+
+async function take(file: string): Promise<void> {
+  while (!(await createLock(file))) {
+    const found = await settledText(file);
+    if (found === null) continue;
+    const holder = holderOf(found);
+    if (holder !== null && (await isAtWork(holder))) throw busy(file, holder);
+    if (await takeOver(file, found)) return;
+  }
+}
+
+/**
+ * Puts a lock of this process in the place of a stale one; false where another writer came first. Only who holds the
+ * lock on the succession to this very lock may replace it, so that of many who find it stale one does.
+ */
+async function takeOver(file: string, stale: string): Promise<boolean> {
+  const succession = `${file}-${sha256(stale).slice(0, 16)}`;
+  await take(succession);
+  if ((await settledText(file)) === stale) {
+    await rename(succession, file);
+    return true;
+  }
+  await unlink(succession);
+  return false;
 }
 
 /** Creates the lock unless it is there: the one step that the file system promises to give to one writer only. */
@@ -50,8 +69,11 @@ async function createLock(file: string): Promise<boolean> {
   try {
     const created = await open(file, 'wx');
     try {
-      const holder: Holder = { pid: process.pid, host: hostname(), began: await beganOf(process.pid) };
+      const holder: Holder = { pid: process.pid, host: hostname(), began: await beganOf(process.pid), run };
       await created.writeFile(`${JSON.stringify(holder)}\n`);
+    } catch (error) {
+      await unlink(file);
+      throw error;
     } finally {
       await created.close();
     }
@@ -90,11 +112,12 @@ const isHolder = (value: unknown): value is Holder =>
   'began' in value &&
   (value.began === null || typeof value.began === 'string');
 
-async function isAtWork(holder: Holder, file: string): Promise<boolean> {
-  if (holder.host !== hostname()) return true;
-  if (holder.pid === process.pid) return heldHere.has(file);
+async function isAtWork(holder: Holder): Promise<boolean> {
+  if (holder.host !== hostname() || holder.run === run) return true;
   if (!isAlive(holder.pid)) return false;
-  return (await beganOf(holder.pid)) === holder.began;
+  const began = await beganOf(holder.pid);
+  // Where the system does not say, this process at least knows that it is not the one of another run.
+  return began === holder.began && (began !== null || holder.pid !== process.pid);
 }
 
 function isAlive(pid: number): boolean {
@@ -115,18 +138,6 @@ async function beganOf(pid: number): Promise<string | null> {
   } catch {
     return null;
   }
-}
-
-/** Takes the stale lock away, unless another writer has done so and put its own in the same place. */
-async function clearStale(file: string, stale: string): Promise<void> {
-  const aside = `${file}-${randomUUID()}`;
-  const moved = await whereThere(async () => {
-    await rename(file, aside);
-    return true;
-  }, false);
-  if (!moved) return;
-  if ((await readFile(aside, 'utf8')) === stale) await unlink(aside);
-  else await rename(aside, file);
 }
 
 const busy = (file: string, holder: Holder): ArchiveError =>
