@@ -40,7 +40,7 @@ function ledgerLines({ folder, ledger }: RecheckResult): string[] {
 }
 
 function faultLines({ kind, line, path, message, row }: LedgerFault, folder: string): string[] {
-  const isOfRecord = kind === 'record-without-row';
+  const isOfRecord = kind === 'record-without-row' || kind === 'record-changed';
   const file = shortPath(join(folder, isOfRecord ? `${path}.json` : 'ledger.csv'));
   const at = isOfRecord || line === null ? file : `${file}:${line}`;
   return row === null ? [`  ${at} ${message}.`] : [`  ${at} ${message}:`, `    ${row}`];

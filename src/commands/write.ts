@@ -21,7 +21,7 @@ import { makeBriefs, stageCover } from './make-briefs.js';
 import { planTheme } from './plan-theme.js';
 import { readPlanned } from './read-planned.js';
 import { tasksOf } from './tasks.js';
-import { folderOf, SILENT, type Work, type WriteOptions } from './work.js';
+import { folderOf, type Reporter, SILENT, type Work, type WriteOptions } from './work.js';
 
 export interface WriteResult {
   /** Absolute paths of the files to open, the cover first. */
@@ -36,6 +36,7 @@ export interface WriteResult {
 export async function writeBriefs(planPath: string, options: WriteOptions = {}): Promise<WriteResult> {
   const report = options.report ?? SILENT;
   const { plan, wanted, figures } = await readPlanned(planPath, options.only ?? []);
+  sayWhatIsPassedOver(plan, figures, report);
 
   const theme = await planTheme(plan);
   const folder = resolve(options.out ?? join(dirname(resolve(plan.path)), 'out'));
@@ -92,6 +93,15 @@ async function checkFirm(archive: Archive, plan: Plan): Promise<void> {
     throw new ArchiveError(
       `${archive.folder} holds the briefs of "${filed}", and this plan is prepared for "${plan.preparedFor}": choose another folder with --out`,
     );
+}
+
+/** Rows under the figures that hold none: totals and notes. */
+function sayWhatIsPassedOver(plan: Plan, figures: Work['figures'], { message }: Reporter): void {
+  const rows = new Map(
+    [...figures.values()].flatMap(({ footer = [] }) => footer.map(({ line, text }) => [line, text])),
+  );
+  for (const [line, text] of rows)
+    message(`${plan.figures.fileTyped}:${line} "${text}" stands under the figures and is passed over`);
 }
 
 function filesToOpen(work: Work, failures: readonly { readonly name: string }[]): string[] {
