@@ -10,8 +10,9 @@ import type { Money } from '../record/assemble-decisions.js';
 import { canonicalJson, sha256 } from '../record/canonical.js';
 import { type Comparison, compare, TOLERANCE } from '../record/compare.js';
 import { figuresCsv } from '../record/figures-csv.js';
-import type { FoundBrief } from '../record/filed.js';
+import type { DamagedRecord, FoundBrief } from '../record/filed.js';
 import { inputsOfRecord } from '../record/inputs.js';
+import type { LedgerCheck } from '../record/ledger-check.js';
 import type { BriefRecord } from '../record/record.js';
 import type { Bench, FoundTheme } from './recheck-bench.js';
 import { type FilesFound, recheckPage, recheckTable, together } from './recheck-files.js';
@@ -21,7 +22,7 @@ import { SOFTWARE } from './software.js';
 
 export async function recheckBrief(brief: FoundBrief, bench: Bench): Promise<Rechecked> {
   const { content, path } = brief;
-  if ('damage' in content) return unreadable(path, content.damage);
+  if ('damage' in content) return unreadable(path, `${content.damage}. ${damageRemedy(brief, content, bench)}`);
   const again = computedAgain(brief, content.record, bench);
   const standing = standingOf(brief, content, again, bench);
   const filed = standing === 'changed' ? again.filed : standing === 'unknown' ? null : content;
@@ -41,13 +42,13 @@ export async function recheckBrief(brief: FoundBrief, bench: Bench): Promise<Rec
   };
 }
 
-export const unreadable = (path: string, damage: string): Rechecked => ({
+export const unreadable = (path: string, message: string): Rechecked => ({
   path,
   verdict: 'unreadable',
   version: null,
   apart: 0,
   differences: [],
-  faults: [{ file: `${path}.json`, message: damage }],
+  faults: [{ file: `${path}.json`, message }],
   notes: [],
 });
 
@@ -102,12 +103,17 @@ function lookedBackAt({ lookBack }: BriefRecord, { records }: Bench) {
  */
 type Standing = 'filed' | 'changed' | 'agreeing' | 'unknown';
 
-function standingOf({ place, slug }: FoundBrief, content: FiledRecord, again: Again, { ledger }: Bench): Standing {
-  const isNamed = (sha: string): boolean => ledger.filed.has(`${place.date}/${slug} ${sha}`);
-  if (isNamed(content.sha256)) return 'filed';
-  if (again.filed !== null && isNamed(again.filed.sha256)) return 'changed';
+function standingOf(brief: FoundBrief, content: FiledRecord, again: Again, { ledger }: Bench): Standing {
+  if (isFiled(brief, content.sha256, ledger)) return 'filed';
+  if (again.filed !== null && isFiled(brief, again.filed.sha256, ledger)) return 'changed';
   return again.why.length === 0 && again.comparison.differences.length === 0 ? 'agreeing' : 'unknown';
 }
+
+const isFiled = ({ place, slug }: FoundBrief, fingerprint: string, { filed }: LedgerCheck): boolean =>
+  filed.has(`${place.date}/${slug} ${fingerprint}`);
+
+const damageRemedy = (brief: FoundBrief, { sha256 }: DamagedRecord, { ledger }: Bench): string =>
+  isFiled(brief, sha256, ledger) ? 'It is as it was filed: recheck it with the version that wrote it' : FROM_A_COPY;
 
 function recordFaults(
   { path, slug }: FoundBrief,

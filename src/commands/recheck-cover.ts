@@ -27,7 +27,7 @@ export async function recheckCover(place: Place, standing: readonly FoundBrief[]
   if (!place.names.has('cover.json')) return unreadable(path, `is not there. ${coverRemedies(place).missing}`);
   const bytes = await readFile(join(bench.archive.folder, `${path}.json`));
   const document = readDocument(bytes, 'seasonbrief-cover/1', (value) => coverSchema.safeParse(value));
-  if ('damage' in document) return unreadable(path, document.damage);
+  if ('damage' in document) return unreadable(path, `${document.damage}. ${coverRemedies(place).wrong}`);
   const cover = document.data;
   const { briefs, faults: shown } = briefsShown(cover, place, standing, bench);
   const again = shown.length > 0 ? { why: [] } : computedAgain(cover, place, briefs, bench);
@@ -36,7 +36,7 @@ export async function recheckCover(place: Place, standing: readonly FoundBrief[]
     ...shown,
     ...('why' in again ? again.why : []),
     ...(comparison.differences.length > 0 ? [`${differencesTold(comparison)}. ${coverRemedies(place).wrong}`] : []),
-    ...(bytes.equals(Buffer.from(canonicalJson(cover)))
+    ...(bytes.equals(Buffer.from(canonicalJson(document.value)))
       ? []
       : [`was saved anew in another way. ${coverRemedies(place).wrong}`]),
   ];

@@ -46,10 +46,11 @@ function faultLines({ kind, line, path, message, row }: LedgerFault, folder: str
   return row === null ? [`  ${at} ${message}.`] : [`  ${at} ${message}:`, `    ${row}`];
 }
 
-/** "12 briefs: 11 agree, 1 differs. 3 covers: all agree. The ledger agrees." */
+/** "12 briefs: 11 agree, 1 differs. 1 cover: 1 agrees. The ledger agrees." */
 function summaryOf({ briefs, covers, ledger }: RecheckResult): string {
   return [
-    ...[countedVerdicts(briefs, 'brief'), covers.length === 0 ? [] : countedVerdicts(covers, 'cover')].flat(),
+    countedVerdicts(briefs, 'brief'),
+    ...(covers.length === 0 ? [] : [countedVerdicts(covers, 'cover')]),
     `The ledger ${ledger.faults.length === 0 ? 'agrees' : 'differs'}.`,
   ].join(' ');
 }
@@ -58,11 +59,11 @@ function countedVerdicts(all: readonly Rechecked[], what: string): string {
   const count = (verdict: Rechecked['verdict']): number => all.filter((each) => each.verdict === verdict).length;
   const [agree, differ, unread] = [count('agrees'), count('differs'), count('unreadable')];
   const parts = [
-    agree === 0 ? [] : [agree === 1 ? '1 agrees' : `${agree} agree`],
-    differ === 0 ? [] : [differ === 1 ? '1 differs' : `${differ} differ`],
-    unread === 0 ? [] : [`${unread} can't be read`],
-  ].flat();
-  return `${counted(all.length, what)}: ${parts.join(', ')}.`;
+    ...(agree === 0 ? [] : [agree === 1 ? '1 agrees' : `${agree} agree`]),
+    ...(differ === 0 ? [] : [differ === 1 ? '1 differs' : `${differ} differ`]),
+    ...(unread === 0 ? [] : [`${unread} can't be read`]),
+  ];
+  return `${counted(all.length, what)}${parts.length === 0 ? '' : `: ${parts.join(', ')}`}.`;
 }
 
 const counted = (count: number, what: string): string => `${count} ${what}${count === 1 ? '' : 's'}`;

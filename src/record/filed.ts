@@ -27,7 +27,7 @@ export interface FoundBrief {
 }
 
 export interface DamagedRecord {
-  /** What is wrong with the file, and what to do. */
+  /** What is wrong with the file. */
   readonly damage: string;
   /** Of the file as it is. */
   readonly sha256: string;
@@ -79,31 +79,34 @@ type Parsed<T> =
       };
     };
 
-/** A record or a cover from its file, or what is wrong with that: a format of another kind is never guessed at. */
+/**
+ * A record or a cover from its file, also as it stands there; or what is wrong with the file: another format is never
+ * guessed at.
+ */
 export function readDocument<T>(
   bytes: Uint8Array,
   format: string,
   parse: (value: unknown) => Parsed<T>,
-): { readonly data: T } | { readonly damage: string } {
+): { readonly data: T; readonly value: unknown } | { readonly damage: string } {
   let value: unknown;
   try {
     value = JSON.parse(new TextDecoder().decode(bytes));
   } catch (error) {
     const said = error instanceof Error ? error.message : String(error);
-    return { damage: `is no JSON (${said}): it was damaged or cut short. Put it back from a copy` };
+    return { damage: `is no JSON (${said}): it was damaged or cut short` };
   }
   const found = valueAt(value, 'format');
   if (found !== format)
     return {
-      damage: `says that its format is ${JSON.stringify(found) ?? 'nothing'}, and this program reads "${format}". Use the version that wrote it, or put the file back from a copy`,
+      damage: `says that its format is ${JSON.stringify(found) ?? 'nothing'}, and this program reads "${format}"`,
     };
   const parsed = parse(value);
-  if (parsed.success) return { data: parsed.data };
+  if (parsed.success) return { data: parsed.data, value };
   const [issue] = parsed.error.issues;
   const version = valueAt(valueAt(value, 'software'), 'version');
   const by = typeof version === 'string' ? `; it says that version ${version} wrote it` : '';
   return {
-    damage: `can't be read as a ${format} (${issue.path.join('.')}: ${issue.message}${by}). Put it back from a copy`,
+    damage: `can't be read as a ${format} (${issue.path.join('.')}: ${issue.message}${by})`,
   };
 }
 

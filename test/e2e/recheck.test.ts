@@ -217,7 +217,9 @@ describe('records and pages that were changed', () => {
       await edit(`${archive}/2026-07-06/visitor-nights.json`, (text) => text.slice(0, 4000));
     });
     expect(out).toContain(`${date}/workshop-labour: can't be read\n  out/${date}/workshop-labour.json says that its `);
-    expect(out).toContain('format is "seasonbrief-record/2", and this program reads "seasonbrief-record/1".');
+    expect(out).toContain(
+      'format is "seasonbrief-record/2", and this program reads "seasonbrief-record/1". Put it back from a copy.',
+    );
     expect(out).toMatch(/2026-07-06\/visitor-nights: can't be read\n.*visitor-nights\.json is no JSON \(/);
     // What goes by the one that was cut short says so.
     expect(out).toContain(

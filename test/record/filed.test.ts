@@ -54,7 +54,7 @@ test('records are read with the SHA-256 of their files; the cover is none of the
 });
 
 test.each([
-  ['{"format": "seasonbrief-rec', /^is no JSON \(.*\): it was damaged or cut short\. Put it back from a copy$/],
+  ['{"format": "seasonbrief-rec', /^is no JSON \(.*\): it was damaged or cut short$/],
   [
     '{"format": "seasonbrief-record/2"}',
     /^says that its format is "seasonbrief-record\/2", and this program reads "seasonbrief-record\/1"/,
